@@ -1,0 +1,256 @@
+"""The results of a check: the one object that tables, figures and results.json are made from.
+
+All numbers are in the job's unit set (length, force, stress; moments in force x length), angles in
+degrees. ``None`` means "has no value here" and becomes null in results.json. The first of ``cases`` is the
+one written at the top level of results.json.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Literal
+
+Verdict = Literal["holds", "low", "high", "unloaded", "not comparable"]
+Zone = Literal["theory", "introduction", "support"]
+FibreName = Literal["inner", "outer"]
+Numbers = tuple[float, ...]
+Grid = tuple[Numbers, ...]
+
+
+@dataclass(frozen=True)
+class Resultants:
+    """Normal force N (tension > 0), shear force V and moment M (> 0 straightens) about the centroid."""
+
+    N: float
+    V: float
+    M: float
+
+
+@dataclass(frozen=True)
+class Fibre:
+    """Hoop stress at one face of a station: hand theory, straight-beam formula, FE, and the comparison.
+
+    ``uncertainty`` is absolute (stress). ``difference`` is (hand - best)/ref of the design; ``verdict`` is
+    None where the theory is within the band but plane stress cannot settle the section.
+    """
+
+    hand: float
+    straight: float
+    fe: float
+    uncertainty: float
+    best: float
+    difference: float | None
+    verdict: Verdict | None
+    von_mises: float
+
+
+@dataclass(frozen=True)
+class Profile:
+    """Hoop stress over the depth, 41 points from the inner face to the outer; y from the centroid, > 0 inward."""
+
+    y: Numbers
+    hand: Numbers
+    fe: Numbers
+
+
+@dataclass(frozen=True)
+class StationResult:
+    """One station of the member. ``piece`` counts from 1; exactly one of ``angle`` and ``distance`` is set."""
+
+    name: str
+    piece: int
+    angle: float | None
+    distance: float | None
+    s: float
+    x: float
+    y: float
+    R: float | None
+    depth: float
+    curvature_ratio: float | None
+    N: float
+    V: float
+    M: float
+    fe: Resultants
+    rn: float | None
+    e: float | None
+    area: float
+    inner: Fibre
+    outer: Fibre
+    zone: Zone | None
+    distance_to_load: float | None
+    utilisation: float | None
+    profile: Profile
+
+
+@dataclass(frozen=True)
+class Governing:
+    """The comparable fibre with the largest stress, and the sentence an engineer should conclude (``why``)."""
+
+    station: str
+    fibre: FibreName
+    hand: float
+    best: float
+    uncertainty: float
+    difference: float | None
+    verdict: Verdict | None
+    why: str
+    utilisation: float | None
+
+
+@dataclass(frozen=True)
+class Peak:
+    """The largest FE fibre stress anywhere outside load introduction and support, stations or not."""
+
+    fibre: FibreName
+    piece: int
+    angle: float | None
+    distance: float | None
+    s: float
+    stress: float
+    uncertainty: float
+    hand: float
+
+
+@dataclass(frozen=True)
+class Displacement:
+    """Displacement (x, y components) of the section at a load or a free end: FE beside strain energy."""
+
+    at: str
+    x: float
+    y: float
+    fe: tuple[float, float]
+    energy: tuple[float, float]
+
+
+@dataclass(frozen=True)
+class FibreCurve:
+    """Fibre stress along one face, sampled at the ``s`` of its Along; ``uncertainty`` is absolute."""
+
+    hand: Numbers
+    fe: Numbers
+    uncertainty: Numbers
+
+
+@dataclass(frozen=True)
+class Along:
+    """Fibre stress along the member. A joint is sampled on both sides (two entries at one s, two pieces)."""
+
+    s: Numbers
+    piece: tuple[int, ...]
+    comparable: tuple[bool, ...]
+    inner: FibreCurve
+    outer: FibreCurve
+
+
+@dataclass(frozen=True)
+class Field:
+    """Hoop stress over the member on a grid: first index along it, second across it from one face to the other.
+
+    Every ``per_element``-th line of the grid, starting with the first, is a line of the mesh.
+    Between pieces the joint line is given twice, once for either piece (``piece`` of each line tells which).
+    """
+
+    per_element: int
+    piece: tuple[int, ...]
+    x: Grid
+    y: Grid
+    hoop: Grid
+
+
+@dataclass(frozen=True)
+class LoadMark:
+    """A load as the drawing shows it: where its resultant acts, and the part of the member it enters over.
+
+    ``enters``: "patch", "bearing", "body" (spread over the depth) or "end". ``s_from`` and ``s_to`` bound it along the
+    centroid line (equal for an end load); ``line`` is the stretch of face (or centroid line) it is spread over.
+    """
+
+    name: str
+    enters: str
+    x: float
+    y: float
+    force: tuple[float, float]
+    moment: float
+    s_from: float
+    s_to: float
+    line: tuple[tuple[float, float], ...]
+
+
+@dataclass(frozen=True)
+class CaseResult:
+    """All that depends on the load case."""
+
+    name: str
+    governing: Governing | None
+    peak: Peak | None
+    stations: tuple[StationResult, ...]
+    displacements: tuple[Displacement, ...]
+    force_residual: float
+    moment_residual: float
+    loads: tuple[LoadMark, ...]
+    along: Along
+    field: Field
+
+
+@dataclass(frozen=True)
+class SectionSummary:
+    """A named section; ``centroid`` is measured from the inner face."""
+
+    area: float
+    centroid: float
+    inertia: float
+    depth: float
+
+
+@dataclass(frozen=True)
+class Level:
+    """One solution of the p-pair ladder: degree, elements along and across, and what it left uncertain.
+
+    ``worst`` is the largest uncertainty over all compared fibres, as a share of the station's larger stress
+    (None for the first solution, which has nothing to be compared with).
+    """
+
+    degree: int
+    cells: int
+    dofs: int
+    worst: float | None
+
+
+@dataclass(frozen=True)
+class MeshSummary:
+    """The final mesh, and the solutions that led to it."""
+
+    cells: int
+    dofs: int
+    levels: tuple[Level, ...]
+
+
+@dataclass(frozen=True)
+class Units:
+    """The names of a job's units, as labels carry them."""
+
+    length: str
+    force: str
+    stress: str
+
+
+@dataclass(frozen=True)
+class Results:
+    """A whole check. ``notes`` are what the reader must know before any number, most important first.
+
+    ``missed`` names the stations (with their case) whose uncertainty did not reach the numerical target.
+    """
+
+    version: str
+    title: str
+    sha256: str
+    unit_set: str
+    units: Units
+    band: float
+    numerical: float
+    yield_stress: float | None
+    notes: tuple[str, ...]
+    sections: dict[str, SectionSummary]
+    mesh: MeshSummary
+    missed: tuple[str, ...]
+    cases: tuple[CaseResult, ...]
