@@ -1,0 +1,128 @@
+"""Whether a member is possible: faces that cross a centre of curvature, joints that do not meet, overlaps."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from intrados.theory.member import Arc, Member, Straight
+from intrados.theory.section import Array
+
+_SAME_DEPTH = 1e-9
+_DEGREES_A_CHORD = 6.0
+
+
+@dataclass(frozen=True)
+class Fault:
+    """What makes a member impossible; ``piece`` counts from 0, ``key`` is the dimension of that piece to blame."""
+
+    piece: int
+    key: str
+    text: str
+
+
+def faults(member: Member) -> tuple[Fault, ...]:
+    """Every reason why the member cannot exist, in the order of its pieces. Overlap is sought only in a sound one."""
+    found = [*_inner_radii(member), *_joints(member), *_turns(member)]
+    return tuple(found or _overlaps(member))
+
+
+def _inner_radii(member: Member) -> list[Fault]:
+    found = []
+    for index, piece in enumerate(member.pieces):
+        if isinstance(piece, Straight):
+            continue
+        offsets = {
+            "inner": [0.0, 0.0],
+            "centroid": [section.centroid for section in piece.sections],
+            "outer": [section.depth for section in piece.sections],
+        }[member.datum]
+        if piece.radius <= max(offsets):
+            text = f"the inner face reaches the centre of curvature: a {member.datum} radius must exceed"
+            found.append(Fault(index, "arc", f"{text} {max(offsets):g} here"))
+    return found
+
+
+def _joints(member: Member) -> list[Fault]:
+    found = []
+    for index in range(1, len(member.pieces)):
+        before, after = member.pieces[index - 1].sections[1], member.pieces[index].sections[0]
+        if abs(before.depth - after.depth) > _SAME_DEPTH * before.depth:
+            text = f"depth {after.depth:g} does not meet depth {before.depth:g} of the piece before: taper instead"
+            found.append(Fault(index, "section", text))
+        elif (
+            member.datum == "centroid"
+            and member.sides[index] == member.sides[index - 1]
+            and abs(before.centroid - after.centroid) > _SAME_DEPTH * before.depth
+        ):
+            text = "the faces do not meet: its centroid is not at the depth of the piece before; trace a face"
+            found.append(Fault(index, "section", text))
+    return found
+
+
+def _turns(member: Member) -> list[Fault]:
+    found = []
+    previous: int | None = None
+    for index, piece in enumerate(member.pieces):
+        if not isinstance(piece, Arc):
+            continue
+        if previous is not None and member.sides[previous] != member.sides[index]:
+            joint = (member.pieces[index - 1].sections[1], piece.sections[0])
+            if member.datum != "centroid":
+                text = f'turns the other way than piece {previous + 1}: that needs datum = "centroid"'
+                found.append(Fault(index, "sweep", text))
+            elif previous == index - 1:
+                text = f"turns the other way than piece {previous + 1}: a straight must lie between them"
+                found.append(Fault(index, "sweep", text))
+            elif not all(section.is_symmetric for section in joint):
+                text = "the bend turns over here: that needs a section symmetric about its centroid"
+                found.append(Fault(index, "section", text))
+        previous = index
+    return found
+
+
+def _overlaps(member: Member) -> list[Fault]:
+    """Pieces whose outline crosses another part of the outline: the polygon of both faces and both ends."""
+    first, second, owner = _outline(member)
+    step = second - first
+    crosses = _cross(step[:, :, None], step[:, None, :])
+    between = first[:, None, :] - first[:, :, None]
+    with np.errstate(divide="ignore", invalid="ignore"):
+        here = _cross(between, step[:, None, :]) / crosses
+        there = _cross(between, step[:, :, None]) / crosses
+    hit = (here > 0.0) & (here < 1.0) & (there > 0.0) & (there < 1.0)
+    count = first.shape[1]
+    apart = np.abs(np.arange(count)[:, None] - np.arange(count)[None, :])
+    hit &= (apart > 1) & (apart < count - 1)
+    if not hit.any():
+        return []
+    pairs = {tuple(sorted((owner[i], owner[j]))) for i, j in np.argwhere(hit)}
+    low, high = min(pairs, key=lambda pair: (pair[1], pair[0]))
+    kind = "sweep" if isinstance(member.pieces[high], Arc) else "straight"
+    with_which = f"piece {low + 1}" if low != high else "itself"
+    return [Fault(high, kind, f"the member runs into itself: this piece overlaps {with_which}")]
+
+
+def _cross(a: Array, b: Array) -> Array:
+    product: Array = a[0] * b[1] - a[1] * b[0]
+    return product
+
+
+def _outline(member: Member) -> tuple[Array, Array, list[int]]:
+    """Start and end points (2, n) of the outline's segments, and the piece each belongs to."""
+    left: list[Array] = []
+    right: list[Array] = []
+    owners: list[int] = []
+    for index, piece in enumerate(member.pieces):
+        count = max(2, round(abs(piece.sweep) / _DEGREES_A_CHORD)) if isinstance(piece, Arc) else 2
+        shares = np.linspace(0.0, 1.0, count + 1)[0 if index == 0 else 1 :]
+        inner = member.points(index, shares, np.zeros_like(shares))
+        outer = member.points(index, shares, member.depth(index, shares))
+        left.append(inner if member.sides[index] > 0 else outer)
+        right.append(outer if member.sides[index] > 0 else inner)
+        owners += [index] * len(shares)
+    ring = np.concatenate([*left, *[face[:, ::-1] for face in right[::-1]]], axis=1)
+    around = owners + owners[::-1]
+    segment_owner = [max(a, b) for a, b in zip(around, [*around[1:], around[0]], strict=True)]
+    return ring, np.roll(ring, -1, axis=1), segment_owner
