@@ -13,6 +13,7 @@ from typing import Literal
 Verdict = Literal["holds", "low", "high", "unloaded", "not comparable"]
 Zone = Literal["theory", "introduction", "support"]
 FibreName = Literal["inner", "outer"]
+End = Literal["clamped", "free"]
 Numbers = tuple[float, ...]
 Grid = tuple[Numbers, ...]
 
@@ -238,6 +239,7 @@ class Units:
 class Results:
     """A whole check. ``notes`` are what the reader must know before any number, most important first.
 
+    ``ends``: how the member is held at its start and its end.
     ``missed`` names the stations (with their case) whose uncertainty did not reach the numerical target.
     """
 
@@ -250,6 +252,7 @@ class Results:
     numerical: float
     yield_stress: float | None
     notes: tuple[str, ...]
+    ends: tuple[End, End]
     sections: dict[str, SectionSummary]
     mesh: MeshSummary
     missed: tuple[str, ...]

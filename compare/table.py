@@ -1,0 +1,300 @@
+"""The terminal output of ``check`` and ``hand``: at most 100 columns, and plain text in a pipe."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable, Sequence
+from dataclasses import dataclass
+from typing import TextIO
+
+from rich.box import Box
+from rich.console import Console, Group, RenderableType
+from rich.table import Table
+from rich.text import Text
+
+from intrados.compare.cautions import CAUTIONS
+from intrados.compare.numeral import Scale, common_scale, percent
+from intrados.compare.results import CaseResult, Fibre, Peak, Results, StationResult, Units
+
+WIDTH = 100
+# A rule of ASCII hyphens under the header and no other line: the same on every terminal and in every pipe.
+_RULED = Box("    \n    \n -- \n    \n    \n    \n    \n    \n", ascii=True)
+_STYLES = {"holds": "green", "low": "bold red", "high": "bold yellow", None: "bold yellow"}
+
+
+@dataclass(frozen=True)
+class HandRow:
+    """One station of the hand theory, in the job's units; R, rn, e and the curvature ratio R/h are None on a straight.
+
+    N > 0 tension, M > 0 straightens, stresses > 0 tension. ``inner_straight`` and ``outer_straight``: N/A and M c/I.
+    ``radial_max``: the radial stress of largest magnitude over the depth, None where there is none.
+    """
+
+    station: str
+    R: float | None
+    depth: float
+    curvature_ratio: float | None
+    N: float
+    V: float
+    M: float
+    area: float
+    rn: float | None
+    e: float | None
+    inner_hand: float
+    outer_hand: float
+    inner_straight: float
+    outer_straight: float
+    radial_max: float | None
+
+
+def show(output: RenderableType, stream: TextIO) -> None:
+    """Print to a stream: colour only where it is a terminal, never wider than 100 columns, no trailing blanks."""
+    console = Console(file=stream, width=WIDTH, highlight=False, markup=False, emoji=False)
+    with console.capture() as captured:
+        console.print(output)
+    stream.write("".join(f"{line.rstrip()}\n" for line in captured.get().splitlines()))
+
+
+def check_table(results: Results) -> Group:
+    """What ``check`` prints: notes, conclusion, for every case stations, peak and displacements, then cautions."""
+    units = results.units
+    parts: list[RenderableType] = [
+        Text(results.title, style="bold"),
+        Text(f"intrados {results.version}, units {units.length}, {units.force}, {units.stress}", style="dim"),
+        Text(),
+    ]
+    if results.notes:
+        parts += [_heading("Know first"), *_items(results.notes), Text()]
+    parts += [_heading("Conclusion"), *_items(_conclusions(results)), Text()]
+    for case in results.cases:
+        parts += [*_case(results, case), Text()]
+    parts += [_heading("Solution"), *_items(_solution(results)), Text(), _heading("Cautions"), *_items(CAUTIONS)]
+    return Group(*parts)
+
+
+def hand_table(title: str, units: Units, rows: Sequence[HandRow]) -> Group:
+    """What ``hand`` prints: the sections, resultants and hand stresses of every station, and the cautions."""
+    length = common_scale(value for row in rows for value in (row.R, row.depth, row.rn))
+    shift = common_scale(row.e for row in rows)
+    area = common_scale(row.area for row in rows)
+    force = common_scale(value for row in rows for value in (row.N, row.V))
+    moment = common_scale(row.M for row in rows)
+    stress = common_scale(
+        value
+        for row in rows
+        for value in (row.inner_hand, row.outer_hand, row.inner_straight, row.outer_straight, row.radial_max)
+    )
+    table = _table(
+        "station",
+        f"R [{length.unit(units.length)}]\nR/h",
+        f"h [{length.unit(units.length)}]\nA [{area.unit(units.length + '^2')}]",
+        f"rn [{length.unit(units.length)}]\ne [{shift.unit(units.length)}]",
+        f"N [{force.unit(units.force)}]\nV [{force.unit(units.force)}]",
+        f"M\n[{moment.unit(_moment(units))}]",
+        f"radial\n[{stress.unit(units.stress)}]",
+        "fibre",
+        f"hand\n[{stress.unit(units.stress)}]",
+        f"straight\n[{stress.unit(units.stress)}]",
+    )
+    for row in rows:
+        inner = stress.decimals(row.inner_hand, row.inner_straight)
+        outer = stress.decimals(row.outer_hand, row.outer_straight)
+        table.add_row(
+            Text(row.station),
+            _ratio(length.text(row.R), row.curvature_ratio),
+            f"{length.text(row.depth)}\n{area.text(row.area)}",
+            f"{length.text(row.rn)}\n{shift.text(row.e)}",
+            f"{force.text(row.N)}\n{force.text(row.V)}",
+            moment.text(row.M),
+            stress.text(row.radial_max),
+            "inner\nouter",
+            f"{stress.text(row.inner_hand, inner)}\n{stress.text(row.outer_hand, outer)}",
+            f"{stress.text(row.inner_straight, inner)}\n{stress.text(row.outer_straight, outer)}",
+        )
+    legend = (
+        "hand: curved-beam theory; straight: N/A and M c/I; radial: largest over the depth. "
+        "N > 0 tension, M > 0 straightens, both at the centroid; stress > 0 tension."
+    )
+    return Group(
+        Text(title, style="bold"),
+        Text(),
+        _heading("Hand theory only, no finite elements"),
+        table,
+        Text(legend, style="dim"),
+        Text(),
+        _heading("Cautions"),
+        *_items(CAUTIONS),
+    )
+
+
+def _heading(text: str) -> Text:
+    return Text(text, style="bold")
+
+
+def _items(sentences: Iterable[str]) -> list[RenderableType]:
+    """Sentences with a hanging indent."""
+    grid = Table.grid(padding=(0, 1))
+    grid.add_column(width=3, justify="right")
+    grid.add_column(overflow="fold")
+    for sentence in sentences:
+        grid.add_row("-", Text(sentence))
+    return [grid]
+
+
+def _table(*headers: str) -> Table:
+    """An empty table: the first column takes what is left and folds, the others keep their numbers whole."""
+    table = Table(box=_RULED, padding=(0, 1, 0, 0), pad_edge=False, show_edge=False, header_style="bold")
+    for index, header in enumerate(headers):
+        left = index == 0 or header in {"fibre", "verdict"}
+        table.add_column(
+            header, justify="left" if left else "right", no_wrap=index > 0, overflow="fold", vertical="top"
+        )
+    return table
+
+
+def _moment(units: Units) -> str:
+    return f"{units.force} {units.length}"
+
+
+def _ratio(above: str, ratio: float | None) -> str:
+    """A value over R/h, or the word for a straight, which has neither."""
+    return "straight\n" if ratio is None else f"{above}\n{ratio:.4g}"
+
+
+def _conclusions(results: Results) -> list[str]:
+    sentences = []
+    for case in results.cases:
+        where = f"Case {case.name}: " if case.name else ""
+        if case.governing is None:
+            sentences.append(
+                f"{where}no station can be compared: each lies under a load or within one depth of a clamped end."
+            )
+            continue
+        sentences.append(where + case.governing.why)
+        if case.governing.utilisation is not None and results.yield_stress is not None:
+            sentences.append(
+                f"{where}Utilisation there {case.governing.utilisation:.3f} "
+                f"of yield {results.yield_stress:g} {results.units.stress}."
+            )
+    return sentences
+
+
+def _case(results: Results, case: CaseResult) -> list[RenderableType]:
+    name = f"Stations, case {case.name}" if case.name else "Stations"
+    legend = (
+        "h: depth; d: distance to the nearest load; U: uncertainty of FE, rounded up; diff: (hand - FE) over |FE|, "
+        f"or over a tenth of the station's larger stress; holds: within {100 * results.band:g} % plus U. "
+        "N > 0 tension, M > 0 straightens; stress > 0 tension."
+    )
+    parts: list[RenderableType] = [_heading(name), _stations(results.units, case), Text(legend, style="dim")]
+    if case.peak is not None:
+        parts += [Text(), *_items([_peak(results.units, case.peak)])]
+    if case.displacements:
+        parts += [Text(), _heading("Displacements, FE beside strain energy"), _displacements(results.units, case)]
+    return parts
+
+
+def _stations(units: Units, case: CaseResult) -> Table:
+    stations = case.stations
+    force = common_scale(value for station in stations for value in (station.N, station.V))
+    moment = common_scale(station.M for station in stations)
+    stress = common_scale(
+        value for station in stations for f in (station.inner, station.outer) for value in (f.hand, f.fe)
+    )
+    unit = stress.unit(units.stress)
+    table = _table(
+        "station\n  zone",
+        "R/h\nd/h",
+        f"N [{force.unit(units.force)}]\nV [{force.unit(units.force)}]",
+        f"M\n[{moment.unit(_moment(units))}]",
+        "fibre",
+        f"hand\n[{unit}]",
+        f"FE\n[{unit}]",
+        f"±U\n[{unit}]",
+        "diff",
+        "verdict",
+    )
+    for station in stations:
+        fibres = (station.inner, station.outer)
+        written = [_fibre(stress, fibre) for fibre in fibres]
+        distance = station.distance_to_load
+        table.add_row(
+            Text(f"{station.name}\n  {station.zone or 'not settled'}"),
+            ("straight" if station.curvature_ratio is None else f"{station.curvature_ratio:.4g}")
+            + ("\n-" if distance is None else f"\n{distance:.2f}"),
+            f"{force.text(station.N)}\n{force.text(station.V)}",
+            moment.text(station.M),
+            "inner\nouter",
+            *("\n".join(column) for column in zip(*written, strict=True)),
+            Text("\n").join(_verdict(fibre) for fibre in fibres),
+        )
+    return table
+
+
+def _fibre(stress: Scale, fibre: Fibre) -> tuple[str, str, str, str]:
+    """Hand, FE, uncertainty and difference; the first three with the same decimals."""
+    decimals = stress.decimals(fibre.hand, fibre.fe)
+    return (
+        stress.text(fibre.hand, decimals),
+        stress.text(fibre.fe, decimals),
+        stress.bound(fibre.uncertainty, decimals),
+        percent(fibre.difference),
+    )
+
+
+def _verdict(fibre: Fibre) -> Text:
+    return Text(fibre.verdict or "not settled", style=_STYLES.get(fibre.verdict, "dim"))
+
+
+def _peak(units: Units, peak: Peak) -> str:
+    stress = common_scale([peak.stress, peak.hand])
+    decimals = stress.decimals(peak.stress, peak.hand)
+    unit = stress.unit(units.stress)
+    length = common_scale([peak.s])
+    return (
+        f"Largest FE fibre stress away from loads and supports: {stress.text(peak.stress, decimals)} "
+        f"± {stress.bound(peak.uncertainty, decimals)} {unit}, {peak.fibre} fibre, piece {peak.piece} "
+        f"at {place(units, peak)} (s = {length.text(peak.s)} {length.unit(units.length)}); "
+        f"hand theory there {stress.text(peak.hand, decimals)} {unit}."
+    )
+
+
+def place(units: Units, at: Peak | StationResult) -> str:
+    """Where on its piece a peak or a station lies: an angle on an arc, a distance on a straight."""
+    if at.angle is not None:
+        return f"{at.angle:.4g} deg"
+    return f"{at.distance:.4g} {units.length}"
+
+
+def _displacements(units: Units, case: CaseResult) -> Table:
+    rows = case.displacements
+    scale = common_scale(value for row in rows for value in (*row.fe, *row.energy))
+    unit = scale.unit(units.length)
+    table = _table("at", *(f"{name}\n[{unit}]" for name in ("FE x", "energy x", "FE y", "energy y")), "diff")
+    for row in rows:
+        size = (row.fe[0] ** 2 + row.fe[1] ** 2) ** 0.5
+        gap = ((row.energy[0] - row.fe[0]) ** 2 + (row.energy[1] - row.fe[1]) ** 2) ** 0.5
+        decimals = scale.decimals(*row.fe, *row.energy)
+        numbers = (row.fe[0], row.energy[0], row.fe[1], row.energy[1])
+        share = f"{100.0 * gap / size:.1f} %" if size > 0 else "-"
+        table.add_row(Text(row.at), *(scale.text(value, decimals) for value in numbers), share)
+    return table
+
+
+def _solution(results: Results) -> list[str]:
+    mesh = results.mesh
+    degrees = ", ".join(str(level.degree) for level in mesh.levels)
+    worst = mesh.levels[-1].worst if mesh.levels else None
+    reached = "" if worst is None else f"; largest uncertainty {100 * worst:.2g} % of the station's larger stress"
+    sentences = [
+        f"Mesh: {mesh.cells} cells, {mesh.dofs} unknowns, degrees {degrees}{reached} "
+        f"(target {100 * results.numerical:g} %)."
+    ]
+    if results.missed:
+        sentences.append(f"The target is NOT met at: {', '.join(results.missed)}.")
+    for case in results.cases:
+        where = f"case {case.name}: " if case.name else ""
+        sentences.append(
+            f"Equilibrium: {where}reactions and loads balance to {case.force_residual:.1e} of the forces "
+            f"and {case.moment_residual:.1e} of the moments."
+        )
+    return sentences
