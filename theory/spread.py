@@ -71,8 +71,8 @@ class FaceSpread(Spread):
     def distributions(self, member: Member, share: Array) -> Array:
         """Force per length of face of the three unit parts, shape (3, 2, n).
 
-        Patch: along x, along y, and a couple of forces along the face's normal at the centre. Bearing (``normal``): along
-        the inward normal, the same growing along the face, and along the face.
+        Patch: along x, along y, and a couple of forces along the face's normal at the centre. Bearing (``normal``):
+        along the inward normal, the same growing along the face, and along the face.
         """
         xi = self.position(share)
         if self.normal:
@@ -98,7 +98,7 @@ class BodySpread(Spread):
     """A body force over the depth, as force per volume, in proportion to the width at every depth."""
 
     def distributions(self, member: Member, share: Array, x: Array) -> Array:
-        """Force per volume of the three unit parts, shape (3, 2, n): along x, along y, and a couple along the tangent."""
+        """Force per volume of the three unit parts, shape (3, 2, n): along x, along y, a couple along the tangent."""
         bell = np.cos(0.5 * math.pi * self.position(share)) ** 2
         zero = np.zeros_like(bell)
         lever = (x - member.centroid(self.piece, share)) / member.depth(self.piece, share)

@@ -38,7 +38,8 @@ class Loading:
     def resultants(self, piece: int, share: float) -> tuple[float, float, float]:
         """N, V, M at a place: about the centroid of its cut, which is normal to the datum line.
 
-        N > 0 tension; V > 0 where the part at greater s pulls the other away from the centre of curvature; M > 0 straightens.
+        N > 0 tension; M > 0 straightens; V > 0 where the part at greater s pulls the other away from the centre of
+        curvature.
         """
         fx, fy, about_origin = self.beyond(piece, share)
         x, y = self.member.centroid_point(piece, share)

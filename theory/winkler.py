@@ -47,7 +47,7 @@ def radial(section: Section, R: float | None, N: float, M: float, x: Array) -> A
     """Radial stress over the depth, > 0 tension; zero on a straight.
 
     The moment M - N R bends alone, sigma_r = m (rn Am' - A')/(A e t r), and the force N acts through the centre of
-    curvature, sigma_r = N rn (R A' - Q')/(A e t r^2), with A', Am', Q' the integrals of t, t/r, r t from the inner face.
+    curvature, sigma_r = N rn (R A' - Q')/(A e t r^2); A', Am', Q' are the integrals of t, t/r, r t from the inner face.
     """
     x = np.asarray(x, dtype=np.float64)
     if R is None:

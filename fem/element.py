@@ -1,0 +1,64 @@
+"""The reference square of degree p: scikit-fem's ElementQuadP tabulated once, for all elements of all members."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import lru_cache
+
+import numpy as np
+
+from intrados.theory.section import Array
+
+
+@dataclass(frozen=True, eq=False)
+class ReferenceSquare:
+    """Basis of degree ``degree`` on the unit square (first coordinate along the member, second across).
+
+    ``values`` (basis, points) and ``gradients`` (2, basis, points) at the tensor Gauss ``points`` (2, points) with
+    ``weights``; ``nodes`` (2, basis) are Gauss-Lobatto points and ``to_coefficients`` (basis, nodes) turns values there
+    into coefficients.
+    """
+
+    degree: int
+    points: Array
+    weights: Array
+    values: Array
+    gradients: Array
+    nodes: Array
+    to_coefficients: Array
+
+
+@lru_cache(maxsize=16)
+def reference_square(degree: int) -> ReferenceSquare:
+    """The tabulated element. Quadrature is exact to order 2p + 1: less leaves modes without energy."""
+    gauss, weight = unit_gauss(degree + 1)
+    points = np.array([np.repeat(gauss, len(gauss)), np.tile(gauss, len(gauss))])
+    values, gradients = basis(degree, points)
+    inner = np.polynomial.legendre.Legendre.basis(degree).deriv().roots()
+    lobatto = 0.5 * (np.concatenate([[-1.0], np.sort(inner.real), [1.0]]) + 1.0)
+    nodes = np.array([np.repeat(lobatto, degree + 1), np.tile(lobatto, degree + 1)])
+    return ReferenceSquare(
+        degree=degree,
+        points=points,
+        weights=np.outer(weight, weight).ravel(),
+        values=values,
+        gradients=gradients,
+        nodes=nodes,
+        to_coefficients=np.linalg.inv(basis(degree, nodes)[0].T).astype(np.float64),
+    )
+
+
+def basis(degree: int, points: Array) -> tuple[Array, Array]:
+    """Values (basis, points) and gradients (2, basis, points) of ElementQuadP at reference points (2, points)."""
+    from skfem import ElementQuadP
+
+    element = ElementQuadP(degree)
+    pairs = [element.lbasis(points, index) for index in range((degree + 1) ** 2)]
+    values = np.array([np.broadcast_to(value, points.shape[1]) for value, _ in pairs])
+    return values, np.array([gradient for _, gradient in pairs]).transpose(1, 0, 2)
+
+
+def unit_gauss(points: int) -> tuple[Array, Array]:
+    """Gauss-Legendre points and weights on 0 to 1."""
+    nodes, weights = np.polynomial.legendre.leggauss(points)
+    return 0.5 * (nodes + 1.0), 0.5 * weights
