@@ -27,7 +27,8 @@ def forces_beyond(membrane: Membrane, displacement: Array, forces: Array, line: 
     only_cut[elements[:, None], on_cut[None, :], 0] = taken[:, on_cut]
     # Forces the cut exerts on the elements beyond it are minus those it exerts on the elements before it.
     found = resultants(membrane, only_cut)[:, 0]
-    return found if before else -found
+    result: Array = found if before else -found
+    return result
 
 
 def _cut_functions(membrane: Membrane, last: bool) -> Numbers:
@@ -51,9 +52,8 @@ def _hoop_in(membrane: Membrane, displacement: Array, column: int, end: int, eta
         low, high = row.eta(np.array([0.0, 1.0]))
         inside = (eta >= low - 1e-12) & (eta <= high + 1e-12)
         points = across_cut(float(end), local_q(row.coefficients, eta[inside]))
-        stress = stresses(membrane, displacement, column * membrane.rows + index, points)
-        txx, tyy, txy = tangent[0] ** 2, tangent[1] ** 2, 2.0 * tangent[0] * tangent[1]
-        result[inside] = txx * stress[0] + tyy * stress[1] + txy * stress[2]
+        element = np.array([column * membrane.rows + index])
+        result[inside] = along(tangent, stresses(membrane, displacement, element, points)[:, 0])
     return result
 
 
@@ -65,23 +65,30 @@ def local_q(coefficients: tuple[float, float, float], eta: Array) -> Array:
     return np.clip(2.0 * (eta - c0) / np.maximum(c1 + root, 1e-300), 0.0, 1.0)
 
 
-def stresses(membrane: Membrane, displacement: Array, element: int, points: Array) -> Array:
-    """sigma_xx, sigma_yy, tau_xy, shape (3, n), at reference points (2, n) of an element.
+def stresses(membrane: Membrane, displacement: Array, elements: Numbers, points: Array) -> Array:
+    """sigma_xx, sigma_yy, tau_xy, shape (3, elements, n), at reference points (2, n) of each element.
 
-    Where the row starts as a square root of the depth its corner has no gradient: there the nearest value is taken.
+    Where a row starts as a square root of the depth its edge has no gradient: the value just inside is taken.
     """
-    nudged = np.clip(points, 1e-6, 1.0 - 1e-6)
+    inside = np.array([points[0], np.clip(points[1], 1e-6, 1.0 - 1e-6)])
     count = membrane.scalars.shape[1]
-    _, gradients = basis(membrane.square.degree, np.array([points[0], nudged[1]]))
-    derivative = membrane.geometry[:, element] @ gradients
-    local = displacement[membrane.vectors[element]].reshape(2, count) @ gradients
-    (xs, ys), (xq, yq) = derivative
-    (us, vs), (uq, vq) = local
+    _, gradients = basis(membrane.square.degree, inside)
+    local = displacement[membrane.vectors[elements]].reshape(len(elements), 2, count).transpose(1, 0, 2)
+    (xs, ys), (xq, yq) = membrane.geometry[None, :, elements] @ gradients[:, None]
+    (us, vs), (uq, vq) = local[None] @ gradients[:, None]
     determinant = xs * yq - ys * xq
     ux, uy = (us * yq - uq * ys) / determinant, (uq * xs - us * xq) / determinant
     vx, vy = (vs * yq - vq * ys) / determinant, (vq * xs - vs * xq) / determinant
     c11, c12, c33 = membrane.elastic.plane_stress
     return np.array([c11 * ux + c12 * vy, c12 * ux + c11 * vy, c33 * (uy + vx)])
+
+
+def along(tangent: Array, stress: Array) -> Array:
+    """Normal stress in the direction ``tangent`` (2, ...) of stresses (3, ...)."""
+    turned: Array = (
+        tangent[0] ** 2 * stress[0] + tangent[1] ** 2 * stress[1] + 2.0 * tangent[0] * tangent[1] * stress[2]
+    )
+    return turned
 
 
 def mean_motion(membrane: Membrane, displacement: Array, line: int, piece: int) -> Array:

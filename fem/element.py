@@ -50,14 +50,21 @@ def reference_square(degree: int) -> ReferenceSquare:
 
 def basis(degree: int, points: Array) -> tuple[Array, Array]:
     """Values (basis, points) and gradients (2, basis, points) of ElementQuadP at reference points (2, points)."""
+    return _basis(degree, np.ascontiguousarray(points).tobytes())
+
+
+@lru_cache(maxsize=512)
+def _basis(degree: int, points: bytes) -> tuple[Array, Array]:
     from skfem import ElementQuadP
 
     element = ElementQuadP(degree)
-    pairs = [element.lbasis(points, index) for index in range((degree + 1) ** 2)]
-    values = np.array([np.broadcast_to(value, points.shape[1]) for value, _ in pairs])
+    at = np.frombuffer(points).reshape(2, -1)
+    pairs = [element.lbasis(at, index) for index in range((degree + 1) ** 2)]
+    values = np.array([np.broadcast_to(value, at.shape[1]) for value, _ in pairs])
     return values, np.array([gradient for _, gradient in pairs]).transpose(1, 0, 2)
 
 
+@lru_cache(maxsize=64)
 def unit_gauss(points: int) -> tuple[Array, Array]:
     """Gauss-Legendre points and weights on 0 to 1."""
     nodes, weights = np.polynomial.legendre.leggauss(points)

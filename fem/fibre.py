@@ -33,23 +33,24 @@ class FaceStress:
     position: Array
     hoop: Array
 
-    def in_column(self, column: int, q: Array) -> Array:
-        """Stress at local coordinates q (0 to 1) of a column, by the polynomial through its Gauss points."""
-        count = self.hoop.shape[1]
-        nodes = 2.0 * unit_gauss(count)[0] - 1.0
-        coefficients = np.linalg.solve(legendre.legvander(nodes, count - 1), self.hoop[column])
-        value: Array = legendre.legval(2.0 * q - 1.0, coefficients)
-        return value
+    def sampled(self, q: Array) -> Array:
+        """Stress (columns, n) at local coordinates q (0 to 1), by the polynomial through each column's Gauss points."""
+        nodes = 2.0 * unit_gauss(self.hoop.shape[1])[0] - 1.0
+        to_q = legendre.legvander(2.0 * q - 1.0, len(nodes) - 1) @ np.linalg.inv(
+            legendre.legvander(nodes, len(nodes) - 1)
+        )
+        values: Array = self.hoop @ to_q.T
+        return values
 
     def at_cut(self, columns: tuple[int, ...], share: float) -> float:
         """Stress at a cut, from the columns beside it: least squares of degree p through their Gauss points."""
         if len(columns) == 1:
             first, last = self.shares[columns[0], [0, -1]]
-            return float(self.in_column(columns[0], np.array(1.0 if share > 0.5 * (first + last) else 0.0)))
+            return float(self.sampled(np.array([1.0 if share > 0.5 * (first + last) else 0.0]))[columns[0], 0])
         shares = self.shares[list(columns)].ravel()
         low, high = shares.min(), shares.max()
         at = 2.0 * (np.append(shares, share) - low) / (high - low) - 1.0
-        vandermonde: Array = legendre.legvander(at, self.hoop.shape[1])
+        vandermonde = np.asarray(legendre.legvander(at, self.hoop.shape[1]))
         fitted = np.linalg.lstsq(vandermonde[:-1], self.hoop[list(columns)].ravel(), rcond=None)[0]
         return float(vandermonde[-1] @ fitted)
 

@@ -9,7 +9,7 @@ from __future__ import annotations
 
 import itertools
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -31,6 +31,10 @@ _LEAST_GAP = 0.06
 _AT_CLAMP = 0.06
 _AT_JOINT = 0.12
 _AT_LOAD = 0.34
+_AT_LOAD_EDGE = 0.12
+_EDGE_DEPTHS = 0.05
+_UNDER_LOAD = 0.35
+_UNDER_LOAD_DEPTHS = 0.12
 _GROWTH = 0.8
 
 
@@ -107,8 +111,12 @@ class Strip:
         return start + (second.width(inner_share * second.depth) - start) * share
 
 
-def plan(loading: Loading, stations: tuple[Station, ...], fineness: int) -> Strip:
-    """The strip for a loaded member with a cut at every station, joint and load; each ``fineness`` halves it again."""
+def plan(loadings: tuple[Loading, ...], stations: tuple[Station, ...], fineness: int) -> Strip:
+    """The strip for a member with a cut at every station, joint and load of any of its load cases.
+
+    Each step of ``fineness`` halves columns and rows again.
+    """
+    loading = _all_together(loadings)
     member = loading.member
     columns: list[Column] = []
     for piece in range(len(member.pieces)):
@@ -118,6 +126,12 @@ def plan(loading: Loading, stations: tuple[Station, ...], fineness: int) -> Stri
         for first, last in itertools.pairwise(distinct):
             columns += _divided(loading, Column(piece, first, last), 0.5**fineness)
     return Strip(member, tuple(columns), _rows(loading, 2**fineness))
+
+
+def _all_together(loadings: tuple[Loading, ...]) -> Loading:
+    """One loading with the spreads of all: a mesh that suits it suits each."""
+    spreads = {(spread.piece, spread.first, spread.last): spread for case in loadings for spread in case.spreads}
+    return replace(loadings[0], spreads=tuple(spreads.values()))
 
 
 def _asked_for(loading: Loading, stations: tuple[Station, ...], piece: int) -> list[float]:
@@ -156,7 +170,9 @@ def _size(loading: Loading, column: Column) -> float:
     for spread in loading.spreads:
         if spread.piece == piece:
             width = (spread.last - spread.first) * member.datum_length(piece)
-            marks += [(share, _AT_LOAD * width) for share in (spread.first, spread.centre, spread.last)]
+            marks += [(spread.centre, _AT_LOAD * width)]
+            edge = min(_AT_LOAD_EDGE * width, _EDGE_DEPTHS * depth)
+            marks += [(share, edge) for share in (spread.first, spread.last)]
     sizes = [_LONGEST_COLUMN * depth]
     for share, size in marks:
         away = max(column.first - share, share - column.last, 0.0) * member.datum_length(piece)
@@ -220,6 +236,7 @@ def _under_loads(loading: Loading) -> list[float]:
             continue
         width = (spread.last - spread.first) * member.datum_length(spread.piece)
         step = width / float(member.depth(spread.piece, np.array(spread.centre)))
+        step = min(_UNDER_LOAD * step, _UNDER_LOAD_DEPTHS)
         reach = step
         while reach < 0.45:
             low = (face == "inner") != (member.sides[spread.piece] != member.sides[0])
