@@ -55,9 +55,9 @@ def common_scale(values: Iterable[float | None]) -> Scale:
 
 
 def percent(share: float | None) -> str:
-    """A signed share in percent with one decimal; ``-`` where there is none."""
+    """A signed share as a number of percent with one decimal; ``-`` where there is none."""
     if share is None or not math.isfinite(share):
         return "-"
     if abs(share) >= 10.0:
-        return f"{'>' if share > 0 else '<-'}999 %"
-    return f"{round(100.0 * share, 1) + 0.0:+.1f} %"
+        return f"{'>' if share > 0 else '<-'}999"
+    return f"{round(100.0 * share, 1) + 0.0:+.1f}"

@@ -181,7 +181,8 @@ def _conclusions(results: Results) -> list[str]:
 def _case(results: Results, case: CaseResult) -> list[RenderableType]:
     name = f"Stations, case {case.name}" if case.name else "Stations"
     legend = (
-        "h: depth; d: distance to the nearest load; U: uncertainty of FE, rounded up; diff: (hand - FE) over |FE|, "
+        "R: centroid radius (none on a straight); h: depth; d: distance to the nearest load; "
+        "U: uncertainty of FE, rounded up; diff: (hand - FE) over |FE|, "
         f"or over a tenth of the station's larger stress; holds: within {100 * results.band:g} % plus U. "
         "N > 0 tension, M > 0 straightens; stress > 0 tension."
     )
@@ -202,7 +203,7 @@ def _stations(units: Units, case: CaseResult) -> Table:
     )
     unit = stress.unit(units.stress)
     table = _table(
-        "station\n  zone",
+        "station\n zone",
         "R/h\nd/h",
         f"N [{force.unit(units.force)}]\nV [{force.unit(units.force)}]",
         f"M\n[{moment.unit(_moment(units))}]",
@@ -210,7 +211,7 @@ def _stations(units: Units, case: CaseResult) -> Table:
         f"hand\n[{unit}]",
         f"FE\n[{unit}]",
         f"±U\n[{unit}]",
-        "diff",
+        "diff\n[%]",
         "verdict",
     )
     for station in stations:
@@ -218,8 +219,8 @@ def _stations(units: Units, case: CaseResult) -> Table:
         written = [_fibre(stress, fibre) for fibre in fibres]
         distance = station.distance_to_load
         table.add_row(
-            Text(f"{station.name}\n  {station.zone or 'not settled'}"),
-            ("straight" if station.curvature_ratio is None else f"{station.curvature_ratio:.4g}")
+            Text(f"{station.name}\n {station.zone or 'not settled'}"),
+            ("-" if station.curvature_ratio is None else f"{station.curvature_ratio:.4g}")
             + ("\n-" if distance is None else f"\n{distance:.2f}"),
             f"{force.text(station.N)}\n{force.text(station.V)}",
             moment.text(station.M),
@@ -269,13 +270,13 @@ def _displacements(units: Units, case: CaseResult) -> Table:
     rows = case.displacements
     scale = common_scale(value for row in rows for value in (*row.fe, *row.energy))
     unit = scale.unit(units.length)
-    table = _table("at", *(f"{name}\n[{unit}]" for name in ("FE x", "energy x", "FE y", "energy y")), "diff")
+    table = _table("at", *(f"{name}\n[{unit}]" for name in ("FE x", "energy x", "FE y", "energy y")), "diff\n[%]")
     for row in rows:
         size = (row.fe[0] ** 2 + row.fe[1] ** 2) ** 0.5
         gap = ((row.energy[0] - row.fe[0]) ** 2 + (row.energy[1] - row.fe[1]) ** 2) ** 0.5
         decimals = scale.decimals(*row.fe, *row.energy)
         numbers = (row.fe[0], row.energy[0], row.fe[1], row.energy[1])
-        share = f"{100.0 * gap / size:.1f} %" if size > 0 else "-"
+        share = f"{100.0 * gap / size:.1f}" if size > 0 else "-"
         table.add_row(Text(row.at), *(scale.text(value, decimals) for value in numbers), share)
     return table
 

@@ -145,11 +145,11 @@ def _distance(shape: Shape, pushes: tuple[Push, ...], s: float) -> float:
 
 def _fibre(hand: float, fe: float, other: float, comparable: bool, straight: float) -> Fibre:
     larger = max(abs(fe), abs(other))
-    difference = (hand - fe) / max(abs(fe), 0.1 * larger)
     uncertainty = 4e-4 * larger
     verdict: Verdict
     if larger < 1e-3:
         return Fibre(hand, straight, fe, 4e-4 * larger, fe, None, "unloaded", 1.01 * abs(fe))
+    difference = (hand - fe) / max(abs(fe), 0.1 * larger)
     if not comparable:
         verdict = "not comparable"
     elif abs(hand - fe) <= BAND * max(abs(fe), 0.1 * larger) + uncertainty:

@@ -1,0 +1,344 @@
+"""The member: mesh, stations, loads and supports over the field of hoop stress."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+from matplotlib.axes import Axes
+from matplotlib.contour import ContourSet
+from matplotlib.figure import Figure
+from matplotlib.lines import Line2D
+from matplotlib.patches import FancyArrowPatch, Patch, Polygon
+from matplotlib.path import Path
+from matplotlib.ticker import MaxNLocator, MultipleLocator
+from numpy.typing import NDArray
+
+from intrados.compare.draw import style
+from intrados.compare.draw.placing import Placer, Point
+from intrados.compare.numeral import Scale, common_scale
+from intrados.compare.results import CaseResult, Field, LoadMark, Results, StationResult
+
+Array = NDArray[np.float64]
+_ROOM = (5.4, 4.9)  # inches the member may take
+_MARGIN = (1.15, 0.85)  # inches around it, for names and arrows
+_ARROW = 38.0  # points, the longest arrow
+
+
+@dataclass(frozen=True)
+class _Strip:
+    """The part of the field on one piece; arrays as in Field, stress scaled."""
+
+    x: Array
+    y: Array
+    hoop: Array
+
+    @property
+    def outline(self) -> Array:
+        """The closed polygon around it."""
+        edges = [(self.x[:, 0], self.y[:, 0]), (self.x[-1], self.y[-1])]
+        edges += [(self.x[::-1, -1], self.y[::-1, -1]), (self.x[0, ::-1], self.y[0, ::-1])]
+        return np.concatenate([np.stack(edge, axis=1) for edge in edges])
+
+
+def draw_member(results: Results, case: CaseResult) -> Figure:
+    """Figure (a): hoop stress on the mesh of the member, with stations, loads and clamped ends; axes in length."""
+    stress = common_scale([_largest(case)])
+    strips = _strips(case.field, stress)
+    figure, axes = _canvas(results, case, strips)
+    levels = _levels(_largest(case) / 10.0**stress.power)
+    filled = _draw_field(axes, strips, levels)
+    _draw_mesh(axes, strips, case.field.per_element)
+    placer = Placer(axes)
+    for strip in strips:
+        placer.keep_off_area(strip.outline)
+    _draw_clamps(axes, placer, results, case.field)
+    _draw_loads(axes, placer, results, case.loads, strips)
+    unnamed = _draw_stations(axes, placer, case)
+    _draw_isolines(axes, placer, strips, levels)
+    _draw_bar(figure, axes, filled, levels, f"hoop stress [{stress.unit(results.units.stress)}], tension > 0")
+    _draw_legend(figure, results, case, unnamed)
+    return figure
+
+
+def _pair(point: Point) -> tuple[float, float]:
+    return float(point[0]), float(point[1])
+
+
+def _largest(case: CaseResult) -> float:
+    """The largest fibre stress where theory and FE are compared; peaks under loads shall not flatten the colours."""
+    along = case.along
+    pairs = zip(along.inner.fe, along.outer.fe, along.comparable, strict=True)
+    compared = [abs(value) for inner, outer, comparable in pairs if comparable for value in (inner, outer)]
+    everywhere = [abs(value) for row in case.field.hoop for value in row if np.isfinite(value)]
+    return max(compared, default=0.0) or max(everywhere, default=0.0) or 1.0
+
+
+def _strips(field: Field, stress: Scale) -> list[_Strip]:
+    piece = np.array(field.piece)
+    x, y, hoop = (np.array(grid, dtype=float) for grid in (field.x, field.y, field.hoop))
+    return [_Strip(x[piece == p], y[piece == p], hoop[piece == p] / 10.0**stress.power) for p in np.unique(piece)]
+
+
+def _canvas(results: Results, case: CaseResult, strips: list[_Strip]) -> tuple[Figure, Axes]:
+    """A figure whose axes have the member's proportions, with margins of fixed width."""
+    low = np.array([min(s.x.min() for s in strips), min(s.y.min() for s in strips)])
+    high = np.array([max(s.x.max() for s in strips), max(s.y.max() for s in strips)])
+    per_inch = float(np.max((high - low) / np.array(_ROOM)))
+    size = (high - low) / per_inch + 2.0 * np.array(_MARGIN)
+    heading = style.title(results, case, int(13 * (size[0] + 1.6)))
+    top = 0.25 + 0.18 * len(heading.splitlines())
+    width, height = float(size[0]) + 2.0, float(size[1]) + 1.25 + top
+    figure = style.new_figure(width, height)
+    axes = figure.add_axes((0.7 / width, 1.25 / height, size[0] / width, size[1] / height))
+    reach = per_inch * np.array(_MARGIN)
+    axes.set_xlim(low[0] - reach[0], high[0] + reach[0])
+    axes.set_ylim(low[1] - reach[1], high[1] + reach[1])
+    axes.set_xlabel(f"x [{results.units.length}]")
+    axes.set_ylabel(f"y [{results.units.length}]")
+    step = float(np.diff(MaxNLocator(8).tick_values(0.0, per_inch * float(np.max(size))))[0])
+    axes.xaxis.set_major_locator(MultipleLocator(step))
+    axes.yaxis.set_major_locator(MultipleLocator(step))
+    figure.text(0.7 / width, 1.0 - 0.14 / height, heading, fontsize=style.LARGE, va="top", ha="left")
+    return figure, axes
+
+
+def _levels(largest: float) -> Array:
+    """Round stresses, symmetric about zero, that cover the range in some twelve steps."""
+    return np.asarray(MaxNLocator(nbins=12, symmetric=True, steps=[1, 2, 2.5, 4, 5, 10]).tick_values(-largest, largest))
+
+
+def _draw_field(axes: Axes, strips: list[_Strip], levels: Array) -> ContourSet:
+    """Colours between the levels; beyond the last ones (under a load) the end colours, told by the bar's tips."""
+    beyond = max(float(np.nanmax(np.abs(strip.hoop))) for strip in strips) > levels[-1]
+    for strip in strips:
+        filled = axes.contourf(
+            strip.x,
+            strip.y,
+            np.ma.masked_invalid(strip.hoop),
+            levels,
+            cmap=style.stress_colours(),
+            extend="both" if beyond else "neither",
+            antialiased=False,
+            zorder=1,
+        )
+        axes.add_patch(Polygon(strip.outline, closed=True, fill=False, edgecolor=style.BLACK, linewidth=1.0, zorder=3))
+    return filled
+
+
+def _draw_mesh(axes: Axes, strips: list[_Strip], step: int) -> None:
+    look: style.Look = {"color": style.DARK, "linewidth": 0.35, "alpha": 0.6, "zorder": 2}
+    for strip in strips:
+        axes.plot(strip.x[::step].T, strip.y[::step].T, **look)
+        axes.plot(strip.x[:, ::step], strip.y[:, ::step], **look)
+
+
+def _draw_isolines(axes: Axes, placer: Placer, strips: list[_Strip], levels: Array) -> None:
+    """Solid in tension, dashed in compression, heavy at zero; each named once on a piece where there is room."""
+    for strip in strips:
+        masked = np.ma.masked_invalid(strip.hoop)
+        styles = [_dash(level) for level in levels]
+        widths = [1.2 if level == 0 else 0.6 for level in levels]
+        lines = axes.contour(
+            strip.x, strip.y, masked, levels, colors=style.BLACK, linestyles=styles, linewidths=widths, zorder=2.5
+        )
+        inside = Path(strip.outline)
+        for level, parts in zip(lines.levels, lines.allsegs, strict=True):
+            longest = max(parts, key=len, default=np.empty((0, 2)))
+            if len(longest) < 4:
+                continue
+            order = sorted(np.linspace(0.06, 0.94, 23), key=lambda share: abs(share - 0.5))
+            spots = [longest[int(share * (len(longest) - 1))] for share in order]
+            text = axes.text(
+                *_pair(spots[0]), style.minus(f"{level:g}"), fontsize=6.0, ha="center", va="center", zorder=6
+            )
+            text.set_bbox({"facecolor": "white", "edgecolor": "none", "alpha": 0.75, "pad": 0.6})
+            placer.within(text, spots, inside)
+
+
+def _dash(level: float) -> str:
+    return "dashdot" if level == 0 else "solid" if level > 0 else "dashed"
+
+
+def _draw_clamps(axes: Axes, placer: Placer, results: Results, field: Field) -> None:
+    """A hatched block behind every clamped end."""
+    for end, (last, before) in zip(results.ends, ((0, 1), (-1, -2)), strict=True):
+        if end != "clamped":
+            continue
+        near = np.array([[field.x[last][j], field.y[last][j]] for j in (0, -1)])
+        inward = np.mean([[field.x[before][j], field.y[before][j]] for j in (0, -1)], axis=0) - near.mean(axis=0)
+        depth = float(np.hypot(*(near[1] - near[0])))
+        point = depth / float(np.hypot(*(placer.pixel(near[1]) - placer.pixel(near[0])))) * placer.points
+        back = -inward / np.hypot(*inward) * 8.0 * point
+        wide = (near[1] - near[0]) / depth * 8.0 * point
+        block = np.array([near[0] - wide, near[1] + wide, near[1] + wide + back, near[0] - wide + back])
+        look: style.Look = {
+            "facecolor": "white",
+            "edgecolor": style.DARK,
+            "linewidth": 0.0,
+            "hatch": "//////",
+            "zorder": 2.8,
+        }
+        axes.add_patch(Polygon(block, closed=True, **look))
+        axes.plot(block[:2, 0], block[:2, 1], color=style.BLACK, linewidth=2.0, zorder=3.2)
+        placer.keep_off_area(np.vstack([block, block[:1]]))
+
+
+def _draw_loads(
+    axes: Axes, placer: Placer, results: Results, loads: tuple[LoadMark, ...], strips: list[_Strip]
+) -> None:
+    """The stretch a load is spread over, an arrow for its resultant, and its name with the magnitude."""
+    force = common_scale(float(np.hypot(*load.force)) for load in loads)
+    moment = common_scale(load.moment for load in loads)
+    moment_unit = moment.unit(f"{results.units.force}·{results.units.length}")
+    named: list[tuple[LoadMark, Point, Point]] = []
+    for load in loads:
+        line = np.array(load.line)
+        if len(line) > 1:
+            axes.plot(line[:, 0], line[:, 1], color=style.BLACK, linewidth=3.2, solid_capstyle="butt", zorder=5)
+        at = np.array([load.x, load.y])
+        size = float(np.hypot(*load.force))
+        if size > 0:
+            tail, head = _arrow(placer, at, np.array(load.force) / size, size / force.largest, strips)
+            axes.add_patch(
+                FancyArrowPatch(
+                    _pair(tail),
+                    _pair(head),
+                    arrowstyle="-|>",
+                    mutation_scale=11,
+                    shrinkA=0,
+                    shrinkB=0,
+                    lw=1.6,
+                    color=style.BLACK,
+                    zorder=7,
+                )
+            )
+            placer.keep_off_line(np.array([tail, head]))
+            away = (tail - head) if np.allclose(head, at) else (head - tail)
+            named.append((load, tail if np.allclose(head, at) else head, away))
+        else:
+            named.append((load, at, np.array([0.0, 1.0])))
+        if load.moment:
+            _draw_turn(axes, placer, at, load.moment)
+    for load, tip, away in named:
+        size = float(np.hypot(*load.force))
+        parts = [style.wrapped(load.name, 22)]
+        if size > 0:
+            parts.append(f"{force.text(size)} {force.unit(results.units.force)}")
+        if load.moment:
+            parts.append(f"{style.minus(moment.text(load.moment))} {moment_unit}")
+        look: style.Look = {"fontsize": style.SMALL, "ha": "center", "va": "center", "zorder": 8}
+        placer.beside(axes.text(*_pair(tip), "\n".join(parts), **look), tip, away, far=True)
+
+
+def _arrow(placer: Placer, at: Point, way: Point, share: float, strips: list[_Strip]) -> tuple[Point, Point]:
+    """Tail and head: a load that presses ends at its point, one that pulls starts there."""
+    length = _ARROW * (0.55 + 0.45 * share) * placer.points
+    step = placer.data(placer.pixel(at) + 4.0 * placer.points * way)
+    presses = any(bool(Path(strip.outline).contains_point(_pair(step))) for strip in strips)
+    back = placer.data(placer.pixel(at) - 4.0 * placer.points * way)
+    presses = presses and not any(bool(Path(strip.outline).contains_point(_pair(back))) for strip in strips)
+    far = placer.data(placer.pixel(at) + (-length if presses else length) * way)
+    return (far, at) if presses else (at, far)
+
+
+def _draw_turn(axes: Axes, placer: Placer, at: Point, moment: float) -> None:
+    """A three-quarter turn around the point, with its head in the sense of the moment."""
+    angles = np.radians(np.linspace(-45.0, 225.0, 40)[:: 1 if moment > 0 else -1])
+    ring = np.array(
+        [placer.data(placer.pixel(at) + 13.0 * placer.points * np.array([np.cos(a), np.sin(a)])) for a in angles]
+    )
+    axes.plot(ring[:, 0], ring[:, 1], color=style.BLACK, linewidth=1.6, zorder=7)
+    axes.add_patch(
+        FancyArrowPatch(
+            _pair(ring[-3]),
+            _pair(ring[-1]),
+            arrowstyle="-|>",
+            mutation_scale=11,
+            shrinkA=0,
+            shrinkB=0,
+            lw=1.6,
+            color=style.BLACK,
+            zorder=7,
+        )
+    )
+    placer.keep_off_line(ring)
+
+
+def _draw_stations(axes: Axes, placer: Placer, case: CaseResult) -> int:
+    """A line across the member and a name outside it; returns how many names had no room."""
+    governing = case.governing.station if case.governing else None
+    unnamed = 0
+    ordered = sorted(case.stations, key=lambda station: (station.name != governing, _is_default(station)))
+    cuts = [_cut(case.field, station) for station in ordered]
+    for station, (inner, outer) in zip(ordered, cuts, strict=True):
+        chosen = station.name == governing
+        outward = outer - inner
+        tip = placer.data(placer.pixel(outer) + 4.0 * placer.points * outward / np.hypot(*outward))
+        width = 2.0 if chosen else 0.8
+        axes.plot(*np.array([inner, tip]).T, color=style.BLACK, linewidth=width, zorder=4, solid_capstyle="butt")
+        look: style.Look = {"fontsize": style.SMALL, "ha": "center", "va": "center", "zorder": 8}
+        text = axes.text(*_pair(tip), style.wrapped(station.name, 20), weight="bold" if chosen else "normal", **look)
+        unnamed += not placer.beside(text, tip, outward, far=chosen)
+    for cut in cuts:
+        placer.keep_off_line(np.array(cut))
+    return unnamed
+
+
+def _is_default(station: StationResult) -> bool:
+    """Whether the name is the automatic piece:place one; names the engineer gave go first."""
+    return station.name.startswith(f"{station.piece}:")
+
+
+def _cut(field: Field, station: StationResult) -> tuple[Point, Point]:
+    """The ends of a station on the inner and the outer face (the longer side of the whole member)."""
+    x, y = np.array(field.x), np.array(field.y)
+    ends = np.stack([x[:, [0, -1]], y[:, [0, -1]]], axis=2)
+    lengths = [float(np.sum(np.hypot(*np.diff(ends[:, side], axis=0).T))) for side in (0, 1)]
+    if lengths[0] > lengths[1]:
+        ends = ends[:, ::-1]
+    across = ends[:, 1] - ends[:, 0]
+    depth = np.hypot(across[:, 0], across[:, 1])
+    across /= depth[:, None]
+    centroid = np.array([station.x, station.y])
+    gap = centroid - ends[:, 0]
+    along = np.sum(gap * across, axis=1)
+    off = gap - along[:, None] * across
+    beyond = np.maximum(0.0, np.maximum(-along, along - depth))
+    distance = np.hypot(off[:, 0], off[:, 1]) + beyond
+    distance[np.array(field.piece) != station.piece] = np.inf
+    best = int(np.argmin(distance))
+    return ends[best, 0] + off[best], ends[best, 1] + off[best]
+
+
+def _draw_bar(figure: Figure, axes: Axes, field: ContourSet, levels: Array, label: str) -> None:
+    """The colour bar, with the isolines of the drawing in it."""
+    width, height = figure.get_size_inches()
+    place = axes.get_position()
+    tall = min(place.height, 4.6 / height)
+    cax = figure.add_axes((place.x1 + 0.25 / width, place.y0 + (place.height - tall) / 2, 0.2 / width, tall))
+    bar = figure.colorbar(field, cax=cax, ticks=levels)
+    bar.set_label(label, labelpad=8)
+    bar.minorticks_off()
+    for level in levels[1:-1]:
+        cax.axhline(level, color=style.BLACK, linestyle=_dash(level), linewidth=1.2 if level == 0 else 0.6)
+
+
+def _draw_legend(figure: Figure, results: Results, case: CaseResult, unnamed: int) -> None:
+    note = f" ({unnamed} without name)" if unnamed else ""
+    entries: list[Line2D | Patch] = [
+        Line2D([], [], color=style.BLACK, linewidth=0.8, label=f"station{note}"),
+        Line2D([], [], color=style.DARK, linewidth=0.4, alpha=0.6, label="mesh"),
+        Line2D([], [], color=style.BLACK, linewidth=0.6, label="isoline, tension"),
+        Line2D([], [], color=style.BLACK, linewidth=0.6, linestyle="dashed", label="isoline, compression"),
+        Line2D([], [], color=style.BLACK, linewidth=1.2, linestyle="dashdot", label="zero hoop stress"),
+    ]
+    if case.governing:
+        entries.insert(1, Line2D([], [], color=style.BLACK, linewidth=2.0, label="governing station (bold)"))
+    if any(len(load.line) > 1 for load in case.loads):
+        entries.append(Line2D([], [], color=style.BLACK, linewidth=3.2, label="where a load enters"))
+    if "clamped" in results.ends:
+        entries.append(Patch(facecolor="white", edgecolor=style.DARK, linewidth=0, hatch="//////", label="clamped end"))
+    width, height = figure.get_size_inches()
+    columns = max(1, min(4, int(width / 1.9)))
+    figure.legend(handles=entries, loc="lower left", bbox_to_anchor=(0.6 / width, 0.06 / height), ncols=columns)
