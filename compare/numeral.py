@@ -37,6 +37,15 @@ class Scale:
         rounded = round(value / 10.0**self.power, places) + 0.0
         return "0" if rounded == 0.0 and decimals is None else f"{rounded:.{places}f}"
 
+    def quantity(self, value: float, name: str) -> str:
+        """A number for running text, with its power of ten and its unit: ``148.1e6 Pa``."""
+        return f"{self.text(value)}{self.exponent} {name}"
+
+    @property
+    def exponent(self) -> str:
+        """What makes a scaled number a whole one in running text: ``e6``, or nothing."""
+        return f"e{self.power}" if self.power else ""
+
     def bound(self, value: float, decimals: int) -> str:
         """The scaled value rounded up: an uncertainty is never shown smaller than it is."""
         if not math.isfinite(value):

@@ -249,13 +249,12 @@ def _verdict(fibre: Fibre) -> Text:
 def _peak(units: Units, peak: Peak) -> str:
     stress = common_scale([peak.stress, peak.hand])
     decimals = stress.decimals(peak.stress, peak.hand)
-    unit = stress.unit(units.stress)
-    length = common_scale([peak.s])
+    power, unit = stress.exponent, units.stress
     return (
-        f"Largest FE fibre stress away from loads and supports: {stress.text(peak.stress, decimals)} "
-        f"± {stress.bound(peak.uncertainty, decimals)} {unit}, {peak.fibre} fibre, piece {peak.piece} "
-        f"at {place(units, peak)} (s = {length.text(peak.s)} {length.unit(units.length)}); "
-        f"hand theory there {stress.text(peak.hand, decimals)} {unit}."
+        f"Largest FE fibre stress away from loads and supports: {stress.text(peak.stress, decimals)}{power} "
+        f"± {stress.bound(peak.uncertainty, decimals)}{power} {unit}, {peak.fibre} fibre, piece {peak.piece} "
+        f"at {place(units, peak)} (s = {common_scale([peak.s]).quantity(peak.s, units.length)}); "
+        f"hand theory there {stress.text(peak.hand, decimals)}{power} {unit}."
     )
 
 

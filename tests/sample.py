@@ -388,6 +388,9 @@ def crowded() -> Results:
         Push(f"hanger number {k + 1} of the long row", 1, 0.55 + 0.04 * k, (500.0 * k, -8000.0 - 1000.0 * k))
         for k in range(3)
     )
-    names = {(1, 0.13): "throat at the weld of the stiffener plate", (1, 0.135): "throat, 2 mm on"}
+    names = {
+        (1, 0.13): "throat, 2 mm before",
+        (1, 0.135): "throat at the weld of the stiffener plate, which is on the left as one looks along the beam",
+    }
     title = "Invented hook whose title goes on and on so that it cannot stand on one line of a figure, revision 12 B"
     return assemble(HOOK, case(HOOK, pushes, every=5.0, names=names), title=title)

@@ -196,6 +196,11 @@ def test_zero_has_no_sign_and_nothing_is_a_dash() -> None:
     assert percent(123.0) == ">999" and percent(-123.0) == "<-999"
 
 
+def test_a_number_in_running_text_is_whole() -> None:
+    assert common_scale([1.481e8]).quantity(-1.481e8, "Pa") == "-148.1e6 Pa"
+    assert common_scale([148.1]).quantity(148.1, "MPa") == "148.1 MPa"
+
+
 def test_units_carry_the_power_of_ten() -> None:
     results = scaled(sample.hook(), 1e6, 1.0)
     text = printed(check_table(replace(results, units=Units("m", "N", "Pa"))))

@@ -183,7 +183,7 @@ def _load_rows(case: CaseResult, length: Scale, span: float) -> list[tuple[str, 
     rows = []
     for load in sorted(case.loads, key=lambda mark: mark.s_from):
         start, stop = load.s_from / 10.0**length.power, load.s_to / 10.0**length.power
-        name = load.name if len(load.name) <= 60 else f"{load.name[:58]}…"
+        name = style.clipped(load.name, 60)
         wide = per_letter * (len(name) + 1.5)
         text = stop + 0.7 * per_letter if stop + wide < origin + span else start - wide
         left, right = min(start, text), max(stop, text + wide)
@@ -228,8 +228,10 @@ def _draw_legend(figure: Figure, panels: list[Axes], results: Results, case: Cas
         (value for face in _FACES for value in _known(_curve(case.along, face).uncertainty, case.along.comparable)),
         default=0.0,
     )
-    unit = stress.unit(results.units.stress)
-    shown = f"at most ±{stress.bound(worst, stress.decimals(stress.largest) + 1)} {unit} where compared"
+    unit = results.units.stress
+    shown = (
+        f"at most ±{stress.bound(worst, stress.decimals(stress.largest) + 1)}{stress.exponent} {unit} where compared"
+    )
     # The line covers what is thinner than itself.
     per_unit = min(72.0 * _PANEL / float(np.diff(axes.get_ylim())[0]) for axes in panels)
     hidden = 2.0 * worst / 10.0**stress.power * per_unit <= 1.2 * float(style.FE["linewidth"])
@@ -243,11 +245,11 @@ def _draw_legend(figure: Figure, panels: list[Axes], results: Results, case: Cas
         Patch(facecolor="white", edgecolor=style.LIGHT, hatch="////", lw=0, label="not comparable: load or support"),
     ]
     if case.governing:
-        number = f"{style.minus(stress.text(case.governing.best))} {unit}"
-        label = f"governing: {style.wrapped(case.governing.station, 30)}, {case.governing.fibre}, FE {number}"
+        number = style.minus(stress.quantity(case.governing.best, unit))
+        label = f"governing: {style.clipped(case.governing.station, 30)}, {case.governing.fibre}, FE {number}"
         entries.append(Line2D([], [], linestyle="none", markeredgecolor="black", label=label, **_GOVERNING))
     if case.peak:
-        label = f"largest FE fibre stress: {style.minus(stress.text(case.peak.stress))} {unit}, {case.peak.fibre}"
+        label = f"largest FE fibre stress: {style.minus(stress.quantity(case.peak.stress, unit))}, {case.peak.fibre}"
         entries.append(Line2D([], [], linestyle="none", markeredgecolor="black", label=label, **_PEAK))
     place = ((_LEFT - 0.1) / _WIDTH, 0.05 / figure.get_size_inches()[1])
     figure.legend(handles=entries, loc="lower left", bbox_to_anchor=place, ncols=2)

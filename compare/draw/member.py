@@ -190,7 +190,7 @@ def _draw_loads(
     """The stretch a load is spread over, an arrow for its resultant, and its name with the magnitude."""
     force = common_scale(float(np.hypot(*load.force)) for load in loads)
     moment = common_scale(load.moment for load in loads)
-    moment_unit = moment.unit(f"{results.units.force}·{results.units.length}")
+    moment_unit = f"{results.units.force}·{results.units.length}"
     named: list[tuple[LoadMark, Point, Point]] = []
     for load in loads:
         line = np.array(load.line)
@@ -224,9 +224,9 @@ def _draw_loads(
         size = float(np.hypot(*load.force))
         parts = [style.wrapped(load.name, 22)]
         if size > 0:
-            parts.append(f"{force.text(size)} {force.unit(results.units.force)}")
+            parts.append(force.quantity(size, results.units.force))
         if load.moment:
-            parts.append(f"{style.minus(moment.text(load.moment))} {moment_unit}")
+            parts.append(style.minus(moment.quantity(load.moment, moment_unit)))
         look: style.Look = {"fontsize": style.SMALL, "ha": "center", "va": "center", "zorder": 8}
         placer.beside(axes.text(*_pair(tip), "\n".join(parts), **look), tip, away, far=True)
 

@@ -98,9 +98,9 @@ def _draw_station(axes: Axes, station: StationResult, reason: str, stress: Scale
     axes.xaxis.set_major_locator(MaxNLocator(5))
     ratio = "straight" if station.curvature_ratio is None else f"R/h {station.curvature_ratio:.3g}"
     name = style.wrapped(station.name, 34).splitlines()
-    shown = name if len(name) <= 2 else [name[0], f"{name[1][:32]}…"]
+    shown = name if len(name) <= 2 else [name[0], style.clipped(f"{name[1]} {name[2]}", 34)]
     verdicts = [fibre.verdict or "not settled" for fibre in (station.inner, station.outer)]
-    both = verdicts[0] if verdicts[0] == verdicts[1] else f"inner {verdicts[0]}, outer {verdicts[1]}"
+    both = f"both faces: {verdicts[0]}" if verdicts[0] == verdicts[1] else f"inner {verdicts[0]}, outer {verdicts[1]}"
     facts = f"{', '.join(filter(None, (ratio, reason)))}\n{both}"
     look: style.Look = {"transform": axes.transAxes, "ha": "left", "va": "bottom", "linespacing": 1.15}
     axes.text(0.0, 1.02, facts, fontsize=style.SMALL, **look)

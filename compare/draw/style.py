@@ -76,6 +76,11 @@ def wrapped(text: str, columns: int) -> str:
     return "\n".join(textwrap.wrap(text, columns)) or text
 
 
+def clipped(text: str, letters: int) -> str:
+    """A name of at most so many letters, the last an ellipsis where something is left out."""
+    return text if len(text) <= letters else f"{text[: letters - 1]}…"
+
+
 def minus(number: str) -> str:
     """A number with a true minus sign, as the axes have it."""
     return number.replace("-", "−")
