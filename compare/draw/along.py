@@ -142,7 +142,7 @@ def _chosen_names(case: CaseResult, length: Scale, span: float) -> list[tuple[St
     chosen: list[tuple[StationResult, str, float]] = []
     for station in order:
         name = style.wrapped(station.name, 22)
-        half = per_inch * (0.075 + 0.065 * (name.count("\n") + 1) - 0.05)
+        half = per_inch * (0.03 + 0.065 * len(name.splitlines()))
         at = station.s / 10.0**length.power
         if all(abs(at - other.s / 10.0**length.power) >= half + taken for other, _, taken in chosen):
             chosen.append((station, name, half))
@@ -166,9 +166,9 @@ def _draw_names(axes: Axes, names: list[tuple[StationResult, str]], case: CaseRe
             xytext=(0, 6),
             textcoords="offset points",
             rotation=90,
+            multialignment="left",
             ha="center",
             va="bottom",
-            linespacing=0.95,
             fontsize=style.SMALL,
             weight="bold" if station.name == governing else "normal",
             annotation_clip=False,
