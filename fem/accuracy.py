@@ -1,9 +1,10 @@
 """Numerical uncertainty of every compared fibre stress, and the refinement that brings it within the target.
 
-Each mesh is solved at rising degree p. The difference between two neighbouring degrees bounds the error of the higher
-one: for smooth fields the error itself is several times smaller. The stated uncertainty is 1.5 times the largest
-difference over the elements at the station and their neighbours on the piece; beside a joint, where the curvature jumps
-and the pair falls short, three times. When the degrees are used up the mesh is halved.
+Each mesh is solved at rising degree p. The change from one degree to the next bounds the error of the higher one: for
+smooth fields the error is many times smaller, while near a singular corner, where it falls only like a power of p,
+the changes yet to come can add up to more than the last one. The stated uncertainty is three times the largest change
+over the nearer halves of the elements at the station: in tests this covers the true error at 95 % of stations or
+more, joints included. When the degrees are used up the mesh is halved.
 """
 
 from __future__ import annotations
@@ -25,17 +26,17 @@ from intrados.theory.section import Array
 from intrados.theory.statics import Loading
 from intrados.theory.station import Station
 
-_FACTOR = 1.5
-_FACTOR_AT_JOINT = 3.0
-_BESIDE_JOINT = 0.2
-_SAMPLES = np.array([0.05, 0.275, 0.5, 0.725, 0.95])
-# What rounding leaves, as a share of the largest fibre stress: the solution repeats to some 1e-10.
-_ROUNDING = 1e-9
-# Below this share of the member's largest fibre stress a station counts as unloaded.
-UNLOADED = 1e-6
+_FACTOR = 3.0
+_SAMPLES = np.array([0.05, 0.2, 0.35, 0.5, 0.65, 0.8, 0.95])
+_HALF = 3
+# What rounding leaves, as a share of the largest fibre stress.
+_ROUNDING = 1e-8
+# A station whose stress is below this share of the member's largest needs no smaller absolute uncertainty than one
+# at this share: what rounding leaves, some 1e-8 of the largest, would otherwise decide.
+FAINT = 1e-3
 FACES: tuple[Face, Face] = ("inner", "outer")
 
-# Degrees tried on the first mesh and on each finer one; the last but one mesh halves columns and rows once.
+# Fineness of each mesh (how often columns and rows are halved) and the degrees tried on it.
 LADDER = ((0, (4, 5, 6, 7, 8, 9, 10)), (1, (7, 8, 9, 10)))
 
 
@@ -85,32 +86,35 @@ class Pair:
     coarse: Solution
     fine: Solution
 
-    @cached_property
-    def in_columns(self) -> dict[tuple[int, Face], Array]:
-        """Absolute uncertainty (stress) of the fibre stress in each column, by case and face."""
-        cases = range(len(self.fine.cases))
-        return {(case, face): self._in_columns(case, face) for case in cases for face in FACES}
-
     def at(self, case: int, face: Face, station: Station) -> float:
         """Absolute uncertainty (stress) of a station's fibre stress."""
         strip = self.fine.membrane.strip
-        columns = strip.columns_beside(strip.line_at(station.piece, station.share), station.piece)
+        line = strip.line_at(station.piece, station.share)
+        change = self.changes[case, face]
+        beside = [
+            change[column, _HALF:] if column < line else change[column, :-_HALF]
+            for column in strip.columns_beside(line, station.piece)
+        ]
         own = abs(self.fine.fibre(case, face, station) - self.coarse.fibre(case, face, station))
-        return float(max(_FACTOR * own, self.in_columns[case, face][list(columns)].max()))
+        return max(_FACTOR * float(np.max(beside)), own, _ROUNDING * self.largest(case))
 
-    def _in_columns(self, case: int, face: Face) -> Array:
-        low, high = self.coarse.cases[case].face(face), self.fine.cases[case].face(face)
-        strip = self.fine.membrane.strip
-        change = np.abs(high.sampled(_SAMPLES) - low.sampled(_SAMPLES)).max(axis=1)
-        pieces = np.array([column.piece for column in strip.columns])
-        neighbour = np.where(pieces[1:] == pieces[:-1], 1.0, 0.0)
-        around = change.copy()
-        around[1:] = np.maximum(around[1:], change[:-1] * neighbour)
-        around[:-1] = np.maximum(around[:-1], change[1:] * neighbour)
-        factors = np.array([_factor(strip, column) for column in range(len(pieces))])
-        largest = max(np.abs(self.fine.cases[case].face(side).hoop).max() for side in FACES)
-        floored: Array = np.maximum(factors * around, _ROUNDING * largest)
-        return floored
+    def in_columns(self, case: int, face: Face) -> Array:
+        """Absolute uncertainty (stress) of the fibre stress anywhere in each column."""
+        within: Array = np.maximum(_FACTOR * self.changes[case, face].max(axis=1), _ROUNDING * self.largest(case))
+        return within
+
+    @cached_property
+    def changes(self) -> dict[tuple[int, Face], Array]:
+        """|fine - coarse| of the fibre stress at sample points of each column, by case and face."""
+        return {
+            (case, face): np.abs(fine.face(face).sampled(_SAMPLES) - coarse.face(face).sampled(_SAMPLES))
+            for case, (fine, coarse) in enumerate(zip(self.fine.cases, self.coarse.cases, strict=True))
+            for face in FACES
+        }
+
+    def largest(self, case: int) -> float:
+        """Largest fibre stress of a case, by magnitude."""
+        return float(max(np.abs(self.fine.cases[case].face(face).hoop).max() for face in FACES))
 
 
 @dataclass(frozen=True, eq=False)
@@ -130,7 +134,7 @@ def refine(
 ) -> Refined:
     """Solve until the uncertainty at every compared station is within ``target`` times its larger fibre stress.
 
-    ``compared`` says for each case and station whether it counts. If the ladder of meshes and degrees is used up before
+    ``compared`` says for each case and station whether it counts; faint ones are held to FAINT. If the ladder of meshes and degrees is used up before
     the target is met, the last pair is returned: the caller sees from the uncertainties where it falls short.
     """
     levels: list[LevelRecord] = []
@@ -184,23 +188,13 @@ def solve(membrane: Membrane, loadings: tuple[Loading, ...]) -> Solution:
     return Solution(membrane, tuple(cases))
 
 
-def _factor(strip: Strip, column: int) -> float:
-    """How many times the change between two degrees is the uncertainty: more within 0.2 depth of a joint."""
-    here = strip.columns[column]
-    depth = float(strip.member.depth(here.piece, np.array(here.first)))
-    near = _BESIDE_JOINT * depth / strip.member.datum_length(here.piece)
-    at_start = here.piece > 0 and here.first < near
-    at_end = here.piece < len(strip.member.pieces) - 1 and here.last > 1.0 - near
-    return _FACTOR_AT_JOINT if at_start or at_end else _FACTOR
-
-
 def _worst(pair: Pair, stations: tuple[Station, ...], compared: tuple[tuple[bool, ...], ...]) -> float:
     worst = 0.0
     for case, counts in enumerate(compared):
         stresses = np.array([[pair.fine.fibre(case, face, station) for face in FACES] for station in stations])
         scales = np.abs(stresses).max(axis=1)
         for station, scale, counted in zip(stations, scales, counts, strict=True):
-            if counted and scale > UNLOADED * scales.max():
+            if counted:
                 found = max(pair.at(case, face, station) for face in FACES)
-                worst = max(worst, found / float(scale))
+                worst = max(worst, found / max(float(scale), FAINT * float(scales.max())))
     return worst

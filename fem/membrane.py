@@ -2,7 +2,8 @@
 
 Geometry is isoparametric: the exact member is interpolated at the Gauss-Lobatto points of each element, so that rigid
 motions are in the element's space and nodal forces balance to rounding. Vectors over degrees of freedom alternate
-x and y; the unknowns are numbered along the member, and the banded matrix is factored once for all load cases.
+x and y. Functions that live inside one element are eliminated there; the rest, the skeleton, is numbered along the
+member, and its banded matrix is factored once for all load cases.
 """
 
 from __future__ import annotations
@@ -111,20 +112,43 @@ class Membrane:
         lower = np.concatenate([c12 * xy.transpose(0, 2, 1) + c33 * xy, c11 * yy + c33 * xx], axis=2)
         return np.concatenate([upper, lower], axis=1)
 
+    @property
+    def _skeleton(self) -> Numbers:
+        """Places in ``vectors`` of the functions that live on vertices and edges, which elements share."""
+        count = self.scalars.shape[1]
+        shared = np.arange(4 * self.square.degree)
+        return np.concatenate([shared, count + shared])
+
+    @property
+    def _bubbles(self) -> Numbers:
+        """Places in ``vectors`` of the functions that vanish on the element's edge, which it has for itself."""
+        return np.setdiff1d(np.arange(self.vectors.shape[1]), self._skeleton)
+
+    @cached_property
+    def _condensed(self) -> tuple[Array, Array, Array]:
+        """Inverse stiffness of the bubbles, how they follow the skeleton, and the skeleton's own stiffness."""
+        shared, own = self._skeleton, self._bubbles
+        inverse = np.linalg.inv(self.stiffness[:, own[:, None], own])
+        coupling = self.stiffness[:, own[:, None], shared]
+        following = inverse @ coupling
+        stiffness = self.stiffness[:, shared[:, None], shared] - coupling.transpose(0, 2, 1) @ following
+        return inverse, following, stiffness
+
     @cached_property
     def factor(self) -> Array:
-        """Banded Cholesky factor of the stiffness with the held unknowns removed (unit rows in their place)."""
+        """Banded Cholesky factor of the skeleton's stiffness, held unknowns removed (unit rows in their place)."""
         from scipy.linalg import cholesky_banded
 
-        rows = np.repeat(self.vectors[:, :, None], self.vectors.shape[1], axis=2)
+        unknowns = self.vectors[:, self._skeleton]
+        size = int(unknowns.max()) + 1
+        rows = np.repeat(unknowns[:, :, None], unknowns.shape[1], axis=2)
         columns = rows.transpose(0, 2, 1)
-        free = np.ones(self.unknowns, dtype=bool)
+        free = np.ones(size, dtype=bool)
         free[self.held] = False
         keep = (rows >= columns) & free[rows] & free[columns]
         width = int((rows - columns).max()) + 1
-        place = (rows - columns)[keep] * self.unknowns + columns[keep]
-        band = np.bincount(place, weights=self.stiffness[keep], minlength=width * self.unknowns)
-        band = band.reshape(width, self.unknowns)
+        place = (rows - columns)[keep] * size + columns[keep]
+        band = np.bincount(place, weights=self._condensed[2][keep], minlength=width * size).reshape(width, size)
         band[0, self.held] = 1.0
         factored: Array = cholesky_banded(band, lower=True, overwrite_ab=True, check_finite=False)
         return factored
@@ -133,16 +157,16 @@ class Membrane:
         """Displacements (unknowns, cases) under consistent forces (elements, 2 basis, cases)."""
         from scipy.linalg import cho_solve_banded
 
-        forces = self.assembled(element_forces)
+        shared, own = self._skeleton, self._bubbles
+        inverse, following, _ = self._condensed
+        passed_on = following.transpose(0, 2, 1) @ element_forces[:, own]
+        forces = np.zeros((self.factor.shape[1], element_forces.shape[2]))
+        np.add.at(forces, self.vectors[:, shared], element_forces[:, shared] - passed_on)
         forces[self.held] = 0.0
-        solved: Array = cho_solve_banded((self.factor, True), forces, check_finite=False)
-        return solved
-
-    def assembled(self, element_vectors: Array) -> Array:
-        """The sum over elements: (elements, 2 basis, cases) -> (unknowns, cases)."""
-        total = np.zeros((self.unknowns, element_vectors.shape[2]))
-        np.add.at(total, self.vectors, element_vectors)
-        return total
+        moved = np.zeros((self.unknowns, element_forces.shape[2]))
+        moved[: len(forces)] = cho_solve_banded((self.factor, True), forces, check_finite=False)
+        moved[self.vectors[:, own]] = inverse @ element_forces[:, own] - following @ moved[self.vectors[:, shared]]
+        return moved
 
 
 def discretise(strip: Strip, mesh: Any, elastic: Elastic, degree: int, start: Support, end: Support) -> Membrane:
@@ -175,10 +199,10 @@ def _interpolated(strip: Strip, square: ReferenceSquare) -> Array:
 
 
 def _numbered_along(element_dofs: Numbers, degree: int, rows: int) -> Numbers:
-    """The dofs renumbered so that they follow the member: all of a cut, then all inside a column, and so on."""
-    place = np.zeros(element_dofs.max() + 1)
+    """The dofs renumbered so that shared ones follow the member, cut by cut; those inside elements come last."""
+    place = np.full(element_dofs.max() + 1, np.inf)
     column = np.arange(element_dofs.shape[0]) // rows
-    place[element_dofs] = column[:, None] + 0.5
+    place[element_dofs[:, : 4 * degree]] = column[:, None] + 0.5
     place[element_dofs[:, first_line(degree)]] = column[:, None]
     place[element_dofs[:, last_line(degree)]] = column[:, None] + 1.0
     number = np.empty(len(place), dtype=np.int64)
