@@ -180,7 +180,7 @@ def test_a_pressing_load_ends_on_the_member_and_a_pulling_one_starts_there() -> 
     results = sample.hook_cases()
     arrows = [p for p in drawn(draw_member, results).axes[0].patches if isinstance(p, FancyArrowPatch)]
     sling, side = results.cases[0].loads
-    heads = [(arrow._posA_posB[0], arrow._posA_posB[1]) for arrow in arrows]  # type: ignore[attr-defined]
+    heads = [(arrow._posA_posB[0], arrow._posA_posB[1]) for arrow in arrows]
     assert np.allclose(heads[0][1], (sling.x, sling.y)) and np.allclose(heads[1][0], (side.x, side.y))
     for (tail, head), load in zip(heads, (sling, side), strict=True):
         way = np.subtract(head, tail)
@@ -188,7 +188,7 @@ def test_a_pressing_load_ends_on_the_member_and_a_pulling_one_starts_there() -> 
 
 
 def luminance(colour: object) -> float:
-    red, green, blue = (c / 12.92 if c <= 0.04045 else ((c + 0.055) / 1.055) ** 2.4 for c in to_rgb(colour))  # type: ignore[arg-type]
+    red, green, blue = (c / 12.92 if c <= 0.04045 else ((c + 0.055) / 1.055) ** 2.4 for c in to_rgb(colour))
     return 0.2126 * red + 0.7152 * green + 0.0722 * blue
 
 
@@ -220,7 +220,7 @@ def test_isolines_are_solid_in_tension_and_dashed_in_compression() -> None:
     sets = [c for c in axes.collections if hasattr(c, "allsegs") and not getattr(c, "filled", True)]
     assert len(sets) == 2
     for lines in sets:
-        for level, dash in zip(lines.levels, lines.get_linestyles(), strict=True):  # type: ignore[attr-defined]
+        for level, dash in zip(lines.levels, lines.get_linestyles(), strict=True):
             assert (dash[1] is None) == (level > 0), level
 
 

@@ -9,20 +9,20 @@ from matplotlib.axes import Axes
 from matplotlib.contour import ContourSet
 from matplotlib.figure import Figure
 from matplotlib.lines import Line2D
-from matplotlib.patches import FancyArrowPatch, Patch, Polygon
+from matplotlib.patches import Patch, Polygon
 from matplotlib.path import Path
 from matplotlib.ticker import MaxNLocator, MultipleLocator
 from numpy.typing import NDArray
 
 from intrados.compare.draw import style
-from intrados.compare.draw.placing import Placer, Point
+from intrados.compare.draw.action import draw_clamps, draw_loads
+from intrados.compare.draw.placing import Placer, Point, pair
 from intrados.compare.numeral import Scale, common_scale
-from intrados.compare.results import CaseResult, Field, LoadMark, Results, StationResult
+from intrados.compare.results import CaseResult, Field, Results, StationResult
 
 Array = NDArray[np.float64]
 _ROOM = (5.4, 4.9)  # inches the member may take
 _MARGIN = (1.15, 0.85)  # inches around it, for names and arrows
-_ARROW = 38.0  # points, the longest arrow
 
 
 @dataclass(frozen=True)
@@ -52,17 +52,13 @@ def draw_member(results: Results, case: CaseResult) -> Figure:
     placer = Placer(axes)
     for strip in strips:
         placer.keep_off_area(strip.outline)
-    _draw_clamps(axes, placer, results, case.field)
-    _draw_loads(axes, placer, results, case.loads, strips)
+    draw_clamps(axes, placer, results.ends, case.field)
+    draw_loads(axes, placer, results.units, case.loads, [Path(strip.outline) for strip in strips])
     unnamed = _draw_stations(axes, placer, case)
     _draw_isolines(axes, placer, strips, levels)
     _draw_bar(figure, axes, filled, levels, f"hoop stress [{stress.unit(results.units.stress)}], tension > 0")
     _draw_legend(figure, results, case, unnamed)
     return figure
-
-
-def _pair(point: Point) -> tuple[float, float]:
-    return float(point[0]), float(point[1])
 
 
 def _largest(case: CaseResult) -> float:
@@ -150,7 +146,7 @@ def _draw_isolines(axes: Axes, placer: Placer, strips: list[_Strip], levels: Arr
             order = sorted(np.linspace(0.06, 0.94, 23), key=lambda share: abs(share - 0.5))
             spots = [longest[int(share * (len(longest) - 1))] for share in order]
             text = axes.text(
-                *_pair(spots[0]), style.minus(f"{level:g}"), fontsize=6.0, ha="center", va="center", zorder=6
+                *pair(spots[0]), style.minus(f"{level:g}"), fontsize=6.0, ha="center", va="center", zorder=6
             )
             text.set_bbox({"facecolor": "white", "edgecolor": "none", "alpha": 0.75, "pad": 0.6})
             placer.within(text, spots, inside)
@@ -158,111 +154,6 @@ def _draw_isolines(axes: Axes, placer: Placer, strips: list[_Strip], levels: Arr
 
 def _dash(level: float) -> str:
     return "dashdot" if level == 0 else "solid" if level > 0 else "dashed"
-
-
-def _draw_clamps(axes: Axes, placer: Placer, results: Results, field: Field) -> None:
-    """A hatched block behind every clamped end."""
-    for end, (last, before) in zip(results.ends, ((0, 1), (-1, -2)), strict=True):
-        if end != "clamped":
-            continue
-        near = np.array([[field.x[last][j], field.y[last][j]] for j in (0, -1)])
-        inward = np.mean([[field.x[before][j], field.y[before][j]] for j in (0, -1)], axis=0) - near.mean(axis=0)
-        depth = float(np.hypot(*(near[1] - near[0])))
-        point = depth / float(np.hypot(*(placer.pixel(near[1]) - placer.pixel(near[0])))) * placer.points
-        back = -inward / np.hypot(*inward) * 8.0 * point
-        wide = (near[1] - near[0]) / depth * 8.0 * point
-        block = np.array([near[0] - wide, near[1] + wide, near[1] + wide + back, near[0] - wide + back])
-        look: style.Look = {
-            "facecolor": "white",
-            "edgecolor": style.DARK,
-            "linewidth": 0.0,
-            "hatch": "//////",
-            "zorder": 2.8,
-        }
-        axes.add_patch(Polygon(block, closed=True, **look))
-        axes.plot(block[:2, 0], block[:2, 1], color=style.BLACK, linewidth=2.0, zorder=3.2)
-        placer.keep_off_area(np.vstack([block, block[:1]]))
-
-
-def _draw_loads(
-    axes: Axes, placer: Placer, results: Results, loads: tuple[LoadMark, ...], strips: list[_Strip]
-) -> None:
-    """The stretch a load is spread over, an arrow for its resultant, and its name with the magnitude."""
-    force = common_scale(float(np.hypot(*load.force)) for load in loads)
-    moment = common_scale(load.moment for load in loads)
-    moment_unit = f"{results.units.force}·{results.units.length}"
-    named: list[tuple[LoadMark, Point, Point]] = []
-    for load in loads:
-        line = np.array(load.line)
-        if len(line) > 1:
-            axes.plot(line[:, 0], line[:, 1], color=style.BLACK, linewidth=3.2, solid_capstyle="butt", zorder=5)
-        at = np.array([load.x, load.y])
-        size = float(np.hypot(*load.force))
-        if size > 0:
-            tail, head = _arrow(placer, at, np.array(load.force) / size, size / force.largest, strips)
-            axes.add_patch(
-                FancyArrowPatch(
-                    _pair(tail),
-                    _pair(head),
-                    arrowstyle="-|>",
-                    mutation_scale=11,
-                    shrinkA=0,
-                    shrinkB=0,
-                    lw=1.6,
-                    color=style.BLACK,
-                    zorder=7,
-                )
-            )
-            placer.keep_off_line(np.array([tail, head]))
-            away = (tail - head) if np.allclose(head, at) else (head - tail)
-            named.append((load, tail if np.allclose(head, at) else head, away))
-        else:
-            named.append((load, at, np.array([0.0, 1.0])))
-        if load.moment:
-            _draw_turn(axes, placer, at, load.moment)
-    for load, tip, away in named:
-        size = float(np.hypot(*load.force))
-        parts = [style.wrapped(load.name, 22)]
-        if size > 0:
-            parts.append(force.quantity(size, results.units.force))
-        if load.moment:
-            parts.append(style.minus(moment.quantity(load.moment, moment_unit)))
-        look: style.Look = {"fontsize": style.SMALL, "ha": "center", "va": "center", "zorder": 8}
-        placer.beside(axes.text(*_pair(tip), "\n".join(parts), **look), tip, away, far=True)
-
-
-def _arrow(placer: Placer, at: Point, way: Point, share: float, strips: list[_Strip]) -> tuple[Point, Point]:
-    """Tail and head: a load that presses ends at its point, one that pulls starts there."""
-    length = _ARROW * (0.55 + 0.45 * share) * placer.points
-    step = placer.data(placer.pixel(at) + 4.0 * placer.points * way)
-    presses = any(bool(Path(strip.outline).contains_point(_pair(step))) for strip in strips)
-    back = placer.data(placer.pixel(at) - 4.0 * placer.points * way)
-    presses = presses and not any(bool(Path(strip.outline).contains_point(_pair(back))) for strip in strips)
-    far = placer.data(placer.pixel(at) + (-length if presses else length) * way)
-    return (far, at) if presses else (at, far)
-
-
-def _draw_turn(axes: Axes, placer: Placer, at: Point, moment: float) -> None:
-    """A three-quarter turn around the point, with its head in the sense of the moment."""
-    angles = np.radians(np.linspace(-45.0, 225.0, 40)[:: 1 if moment > 0 else -1])
-    ring = np.array(
-        [placer.data(placer.pixel(at) + 13.0 * placer.points * np.array([np.cos(a), np.sin(a)])) for a in angles]
-    )
-    axes.plot(ring[:, 0], ring[:, 1], color=style.BLACK, linewidth=1.6, zorder=7)
-    axes.add_patch(
-        FancyArrowPatch(
-            _pair(ring[-3]),
-            _pair(ring[-1]),
-            arrowstyle="-|>",
-            mutation_scale=11,
-            shrinkA=0,
-            shrinkB=0,
-            lw=1.6,
-            color=style.BLACK,
-            zorder=7,
-        )
-    )
-    placer.keep_off_line(ring)
 
 
 def _draw_stations(axes: Axes, placer: Placer, case: CaseResult) -> int:
@@ -278,7 +169,7 @@ def _draw_stations(axes: Axes, placer: Placer, case: CaseResult) -> int:
         width = 2.0 if chosen else 0.8
         axes.plot(*np.array([inner, tip]).T, color=style.BLACK, linewidth=width, zorder=4, solid_capstyle="butt")
         look: style.Look = {"fontsize": style.SMALL, "ha": "center", "va": "center", "zorder": 8}
-        text = axes.text(*_pair(tip), style.wrapped(station.name, 20), weight="bold" if chosen else "normal", **look)
+        text = axes.text(*pair(tip), style.wrapped(station.name, 20), weight="bold" if chosen else "normal", **look)
         unnamed += not placer.beside(text, tip, outward, far=chosen)
     for cut in cuts:
         placer.keep_off_line(np.array(cut))

@@ -17,6 +17,11 @@ _TURNS = (0.0, 15.0, -15.0, 32.0, -32.0, 52.0, -52.0, 75.0, -75.0, 100.0, -100.0
 _CLEAR = 2.0
 
 
+def pair(point: Point) -> tuple[float, float]:
+    """A point as the two plain floats that artists take."""
+    return float(point[0]), float(point[1])
+
+
 class Placer:
     """Keeps what is drawn in one axes, in pixels, and finds room for text. Limits of the axes must be final."""
 
