@@ -27,6 +27,10 @@ Array = NDArray[np.float64]
 # Gauss-Legendre converges like rho^(-2n): n = 19/ln(rho) takes the error to 1e-16.
 _DECADES = 19.0
 _FEWEST_POINTS = 20
+# Enough for an inner radius of a millionth of the depth; beyond that the rule would outgrow the memory.
+_MOST_POINTS = 500
+# Places closer than this share of the depth are one place.
+_COINCIDENT = 1e-9
 
 
 class SectionError(ValueError):
@@ -108,7 +112,7 @@ class Layer:
 
     def is_round_at(self, x: float) -> bool:
         """Whether the width starts like a square root at the end ``x`` of the layer."""
-        return any(abs(point - x) <= 1e-9 * (self.outer - self.inner) for point in self.branch_points)
+        return any(abs(point - x) <= _COINCIDENT * (self.outer - self.inner) for point in self.branch_points)
 
 
 @dataclass(frozen=True)
@@ -211,10 +215,10 @@ class Section:
     def ring(self, R: float) -> Ring:
         """Ring integrals about a centre of curvature at the distance ``R`` (length) from the centroid.
 
-        Raises ValueError where the inner face reaches the centre of curvature (R <= centroid).
+        Raises ValueError where the inner face reaches the centre of curvature, to a billionth of the depth.
         Source: definitions above; the stable form of e is derived in the module's header.
         """
-        if not R > self.centroid:
+        if not R - self.centroid > _COINCIDENT * self.depth:
             raise ValueError(f"inner face at radius {R - self.centroid:g} reaches the centre of curvature")
         x, weights = self.quadrature(R)
         z = x - self.centroid
@@ -239,9 +243,11 @@ def _layer_rule(layer: Layer, outer: float, pole: float | None) -> tuple[Array, 
     """Points and area weights over a layer cut off at ``outer``, fine enough for a pole at depth ``pole``."""
     half = 0.5 * (outer - layer.inner)
     mid = layer.inner + half
-    singular = [point for point in layer.branch_points if not (layer.is_round_at(point))]
-    if outer < layer.outer:
-        singular += [point for point in layer.branch_points if abs(point - layer.outer) <= 1e-9 * layer.outer]
+    # A square root that starts at an end of the rule is smooth in the angle; one beyond an end is not.
+    ends = (layer.inner, outer)
+    singular = [
+        point for point in layer.branch_points if min(abs(point - end) for end in ends) > _COINCIDENT * layer.outer
+    ]
     if pole is not None:
         singular.append(pole)
     points = _FEWEST_POINTS
@@ -252,7 +258,7 @@ def _layer_rule(layer: Layer, outer: float, pole: float | None) -> tuple[Array, 
             z = complex(-1.0, 2.0 / math.pi * math.acosh(ratio))
             root = (z * z - 1.0) ** 0.5
             rho = max(abs(z + root), abs(z - root))
-            points = max(points, math.ceil(_DECADES / math.log(rho)))
+            points = max(points, min(math.ceil(_DECADES / math.log(rho)), _MOST_POINTS))
     angle, weight = _gauss_angles(points)
     x = mid - half * np.cos(angle)
     return x, weight * half * np.sin(angle) * layer.width(x)
