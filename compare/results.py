@@ -134,10 +134,14 @@ class FibreCurve:
 
 @dataclass(frozen=True)
 class Along:
-    """Fibre stress along the member. A joint is sampled on both sides (two entries at one s, two pieces)."""
+    """Fibre stress along the member. A joint is sampled on both sides (two entries at one s, two pieces).
+
+    ``share`` (0 to 1) goes along the datum line of each piece.
+    """
 
     s: Numbers
     piece: tuple[int, ...]
+    share: Numbers
     comparable: tuple[bool, ...]
     inner: FibreCurve
     outer: FibreCurve
@@ -145,7 +149,9 @@ class Along:
 
 @dataclass(frozen=True)
 class Field:
-    """Hoop stress over the member on a grid: first index along it, second across it from one face to the other.
+    """Hoop stress over the member on a grid: first index along it, second across it.
+
+    Across it goes from the inner face to the outer.
 
     Every ``per_element``-th line of the grid, starting with the first, is a line of the mesh.
     Between pieces the joint line is given twice, once for either piece (``piece`` of each line tells which).
@@ -179,7 +185,11 @@ class LoadMark:
 
 @dataclass(frozen=True)
 class CaseResult:
-    """All that depends on the load case."""
+    """All that depends on the load case.
+
+    The residuals compare N, V, M of the FE (from nodal forces) with statics on the stations' cuts: the largest
+    difference as a share of the largest force, and of the largest moment.
+    """
 
     name: str
     governing: Governing | None

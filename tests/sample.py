@@ -209,21 +209,22 @@ def _numbers(values: Array) -> Numbers:
 
 def _along(shape: Shape, pushes: tuple[Push, ...]) -> Along:
     faces = np.array([shape.depth / 2, -shape.depth / 2])
-    rows: list[tuple[float, int, bool, Array, Array]] = []
+    rows: list[tuple[float, int, float, bool, Array, Array]] = []
     for piece, part in enumerate(shape.pieces):
         for along in np.linspace(0.0, part.length, max(9, int(part.length / shape.depth * 12))):
             s = shape.start(piece) + float(along)
             forces = resultants(shape, pushes, piece, float(along))
             comparable = _distance(shape, pushes, s) > 0 and s > shape.depth
             fe = _disturbed(shape, pushes, piece, float(along), faces)
-            rows.append((s, piece + 1, comparable, shape.hoop(piece, forces, faces), fe))
+            rows.append((s, piece + 1, float(along) / part.length, comparable, shape.hoop(piece, forces, faces), fe))
     curves = []
     for face in (0, 1):
-        spread = tuple(4e-4 * float(np.max(np.abs(row[4]))) for row in rows)
+        spread = tuple(4e-4 * float(np.max(np.abs(row[5]))) for row in rows)
         curves.append(
-            FibreCurve(tuple(float(row[3][face]) for row in rows), tuple(float(row[4][face]) for row in rows), spread)
+            FibreCurve(tuple(float(row[4][face]) for row in rows), tuple(float(row[5][face]) for row in rows), spread)
         )
-    return Along(tuple(r[0] for r in rows), tuple(r[1] for r in rows), tuple(r[2] for r in rows), *curves)
+    s, pieces, shares, comparable_at, _, _ = zip(*rows, strict=True)
+    return Along(s, pieces, shares, comparable_at, *curves)
 
 
 def _field(shape: Shape, pushes: tuple[Push, ...], per_element: int = 4, across: int = 4) -> Field:

@@ -45,6 +45,8 @@ class Spread(ABC):
 
     def resultant(self, member: Member, first: float, last: float) -> Array:
         """Fx, Fy and moment about the origin, shape (3), of what enters between two shares of the piece."""
+        if first <= self.first and last >= self.last:
+            return self.wanted()
         first, last = max(first, self.first), min(last, self.last)
         if last <= first:
             return np.zeros(3)

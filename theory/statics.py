@@ -36,12 +36,16 @@ class Loading:
     end_loads: tuple[EndLoad, ...]
 
     def resultants(self, piece: int, share: float) -> tuple[float, float, float]:
-        """N, V, M at a place: about the centroid of its cut, which is normal to the datum line.
+        """N, V, M at a place, by statics."""
+        return self.on_cut(piece, share, self.beyond(piece, share))
 
-        N > 0 tension; M > 0 straightens; V > 0 where the part at greater s pulls the other away from the centre of
-        curvature.
+    def on_cut(self, piece: int, share: float, wrench: Array) -> tuple[float, float, float]:
+        """N, V, M on the cut at a place, which is normal to the datum line, about its centroid.
+
+        ``wrench``, shape (3): Fx, Fy and moment about the origin that the part at greater s exerts. N > 0 tension;
+        M > 0 straightens; V > 0 where the part at greater s pulls the other away from the centre of curvature.
         """
-        fx, fy, about_origin = self.beyond(piece, share)
+        fx, fy, about_origin = wrench
         x, y = self.member.centroid_point(piece, share)
         at = np.array([share])
         tangent, inward = self.member.tangent(piece, at)[:, 0], self.member.inward(piece, at)[:, 0]

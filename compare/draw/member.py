@@ -182,12 +182,9 @@ def _is_default(station: StationResult) -> bool:
 
 
 def _cut(field: Field, station: StationResult) -> tuple[Point, Point]:
-    """The ends of a station on the inner and the outer face (the longer side of the whole member)."""
+    """The ends of a station on the inner and the outer face."""
     x, y = np.array(field.x), np.array(field.y)
     ends = np.stack([x[:, [0, -1]], y[:, [0, -1]]], axis=2)
-    lengths = [float(np.sum(np.hypot(*np.diff(ends[:, side], axis=0).T))) for side in (0, 1)]
-    if lengths[0] > lengths[1]:
-        ends = ends[:, ::-1]
     across = ends[:, 1] - ends[:, 0]
     depth = np.hypot(across[:, 0], across[:, 1])
     across /= depth[:, None]

@@ -1,0 +1,211 @@
+"""What an engineer should conclude: what to know first, what governs, and the sentence that says it."""
+
+from __future__ import annotations
+
+from intrados.compare.job import Job
+from intrados.compare.numeral import common_scale
+from intrados.compare.results import Along, Fibre, FibreName, Governing, Peak, StationResult, Units
+from intrados.compare.verdict import is_compact, is_settled
+from intrados.theory.load import BodyLoad, EndLoad
+from intrados.theory.member import Arc, Member
+from intrados.theory.spread import BodySpread
+
+# Stresses closer than this are a tie, which the station nearer the start wins.
+_TIE = 1e-9
+# A peak between stations is worth a word when it exceeds the governing station by more than this share.
+_NOTEWORTHY = 0.02
+# Stations that carry less than this share of the governing stress are counted apart.
+_FAINT = 0.05
+_FIBRES: tuple[FibreName, FibreName] = ("inner", "outer")
+
+
+def notes(job: Job) -> tuple[str, ...]:
+    """What the reader must know before any number, most important first."""
+    return tuple(dict.fromkeys([*_about_sections(job), *_about_loads(job), *_about_joints(job), *_about_motion(job)]))
+
+
+def _about_sections(job: Job) -> list[str]:
+    used = {section for piece in job.member.pieces for section in piece.sections}
+    named = {name: section for name, section in job.sections.items() if section in used}
+    unsettled = [f"{name} ({section.shape})" for name, section in named.items() if not is_settled(section)]
+    doubtful = [
+        f"{name} ({section.shape})"
+        for name, section in named.items()
+        if is_settled(section) and not is_compact(section)
+    ]
+    found = []
+    if unsettled:
+        found.append(
+            f"Plane stress alone does not settle section {', '.join(unsettled)}: flanges and walls curl out of the plane "
+            "and can carry tens of percent less than both the hand theory and this FE give them. "
+            "No station there is given a 'holds'."
+        )
+    if doubtful:
+        found.append(
+            f"Plane stress alone does not settle section {', '.join(doubtful)}: its width varies or exceeds half its "
+            "depth, and the three-dimensional stress can differ from this FE by a few percent, more in a tight bend."
+        )
+    return found
+
+
+def _about_loads(job: Job) -> list[str]:
+    found = []
+    asked = {load.name: load for load in job.loads if not isinstance(load, EndLoad)}
+    for loading in job.loadings:
+        for spread in loading.spreads:
+            load = asked[spread.name]
+            if isinstance(load, BodyLoad):
+                continue
+            if isinstance(spread, BodySpread):
+                found.append(
+                    f"Load {spread.name} is on a face of zero width: it enters as a body force over the depth with the "
+                    "same resultant."
+                )
+            if abs(spread.centre - load.share) > 1e-6:
+                extent = job.member.extent(spread.piece)
+                unit = "deg" if isinstance(job.member.pieces[spread.piece], Arc) else job.units.length
+                found.append(
+                    f"Bearing {spread.name} settles at {spread.centre * extent:.4g} {unit} of piece {spread.piece + 1}, "
+                    f"where the face's normal is parallel to its force, not at {load.share * extent:.4g} {unit}."
+                )
+    return found
+
+
+def _about_joints(job: Job) -> list[str]:
+    pieces = job.member.pieces
+    jumps = [
+        str(index) for index in range(1, len(pieces)) if pieces[index - 1].sections[1] != pieces[index].sections[0]
+    ]
+    if not jumps:
+        return []
+    return [f"The width jumps at the end of piece {', '.join(jumps)}: fibre stress beside the jump is local."]
+
+
+def _about_motion(job: Job) -> list[str]:
+    if job.loadings[0].start == job.loadings[0].end == "free":
+        return ["Both ends are free: displacements are relative to the section at the start."]
+    return []
+
+
+def peak(curves: Along, member: Member) -> Peak | None:
+    """The largest FE fibre stress outside load introduction and support, at stations or not."""
+    best: Peak | None = None
+    for fibre, curve in zip(_FIBRES, (curves.inner, curves.outer), strict=True):
+        for index, comparable in enumerate(curves.comparable):
+            stress = curve.fe[index]
+            if not comparable or (best is not None and abs(stress) <= abs(best.stress) * (1.0 + _TIE)):
+                continue
+            piece = curves.piece[index] - 1
+            position = curves.share[index] * member.extent(piece)
+            is_arc = isinstance(member.pieces[piece], Arc)
+            best = Peak(
+                fibre=fibre,
+                piece=piece + 1,
+                angle=position if is_arc else None,
+                distance=None if is_arc else position,
+                s=curves.s[index],
+                stress=stress,
+                uncertainty=curve.uncertainty[index],
+                hand=curve.hand[index],
+            )
+    return best
+
+
+def governing(stations: tuple[StationResult, ...], highest: Peak | None, job: Job) -> Governing | None:
+    """The comparable fibre with the largest |best| and what to conclude; None where no station can be compared."""
+    chosen: tuple[StationResult, FibreName, Fibre] | None = None
+    for station in stations:
+        for name in _FIBRES:
+            fibre: Fibre = getattr(station, name)
+            if fibre.verdict in ("not comparable", "unloaded"):
+                continue
+            if chosen is None or abs(fibre.best) > abs(chosen[2].best) * (1.0 + _TIE):
+                chosen = (station, name, fibre)
+    if chosen is None:
+        return None
+    station, name, fibre = chosen
+    sentences = [
+        _first_sentence(station, name, fibre, job),
+        _elsewhere(stations, fibre.best),
+        _beyond_comparison(stations, fibre, job.units),
+        _between_stations(highest, fibre, job.units),
+    ]
+    return Governing(
+        station=station.name,
+        fibre=name,
+        hand=fibre.hand,
+        best=fibre.best,
+        uncertainty=fibre.uncertainty,
+        difference=fibre.difference,
+        verdict=fibre.verdict,
+        why=" ".join(sentence for sentence in sentences if sentence),
+        utilisation=station.utilisation,
+    )
+
+
+def _first_sentence(station: StationResult, name: FibreName, fibre: Fibre, job: Job) -> str:
+    scale = common_scale([fibre.hand, fibre.best])
+    decimals = scale.decimals(fibre.hand, fibre.best)
+    unit, power = job.units.stress, scale.exponent
+    numbers = (
+        f"hand {scale.text(fibre.hand, decimals)}{power} {unit}, FE {scale.text(fibre.best, decimals)}{power} "
+        f"± {scale.bound(fibre.uncertainty, decimals)}{power} {unit}"
+    )
+    place = f"at the governing station {station.name}, {name} fibre ({numbers})"
+    band = f"{100.0 * job.agreement.band:g} %"
+    off = 100.0 * abs(fibre.difference or 0.0)
+    if fibre.verdict == "holds":
+        return f"The hand theory holds {place}: it is within the band of {band}."
+    if fibre.verdict is None:
+        return (
+            f"The hand theory agrees with plane stress {place}, but plane stress does not settle this section: "
+            "do not sign off on it alone."
+        )
+    if fibre.verdict == "low":
+        return f"Do not rely on the hand theory {place}: it is {off:.1f} % low, on the unsafe side, beyond the band of {band}."
+    return f"The hand theory is {off:.1f} % high {place}, on the safe side but beyond the band of {band}."
+
+
+def _elsewhere(stations: tuple[StationResult, ...], governing_stress: float) -> str:
+    """How the theory does at all compared stations that carry a stress worth the name."""
+    fibres = [(station.inner, station.outer) for station in stations]
+    compared = [pair for pair in fibres if not {"not comparable", "unloaded"} & {fibre.verdict for fibre in pair}]
+    loaded = [pair for pair in compared if max(abs(fibre.best) for fibre in pair) >= _FAINT * abs(governing_stress)]
+    holding = sum(all(fibre.verdict == "holds" for fibre in pair) for pair in loaded)
+    unsafe = sum(any(fibre.verdict == "low" for fibre in pair) for pair in loaded)
+    faint = len(compared) - len(loaded)
+    rest = f" ({faint} more carry less than {100.0 * _FAINT:g} % of the governing stress.)" if faint else ""
+    if holding == len(loaded):
+        return f"It holds on both fibres at all {len(loaded)} loaded stations compared.{rest}"
+    return (
+        f"Of {len(loaded)} loaded stations compared it holds on both fibres at {holding} and is low, on the unsafe "
+        f"side, at {unsafe}.{rest}"
+    )
+
+
+def _beyond_comparison(stations: tuple[StationResult, ...], fibre: Fibre, units: Units) -> str:
+    """Names a station outside comparison whose hand stress is larger than the governing one."""
+    apart = [
+        (max(abs(station.inner.hand), abs(station.outer.hand)), station)
+        for station in stations
+        if station.inner.verdict == "not comparable"
+    ]
+    if not apart:
+        return ""
+    largest, station = max(apart, key=lambda pair: pair[0])
+    if largest <= abs(fibre.hand):
+        return ""
+    reason = "a load enters there" if station.zone == "introduction" else "it is within one depth of the clamped end"
+    stress = common_scale([largest]).quantity(largest, units.stress)
+    return f"Station {station.name} has a larger hand stress, {stress}, but cannot be compared: {reason}."
+
+
+def _between_stations(highest: Peak | None, fibre: Fibre, units: Units) -> str:
+    if highest is None or abs(highest.stress) <= (1.0 + _NOTEWORTHY) * abs(fibre.best):
+        return ""
+    stress = common_scale([highest.stress]).quantity(highest.stress, units.stress)
+    where = f"{highest.angle:.4g} deg" if highest.angle is not None else f"{highest.distance:.4g} {units.length}"
+    return (
+        f"Between stations the FE reaches {stress} ({highest.fibre} fibre, piece {highest.piece} at {where}): "
+        "set a station there."
+    )
