@@ -36,8 +36,8 @@ def _about_sections(job: Job) -> list[str]:
     found = []
     if unsettled:
         found.append(
-            f"Plane stress alone does not settle section {', '.join(unsettled)}: flanges and walls curl out of the plane "
-            "and can carry tens of percent less than both the hand theory and this FE give them. "
+            f"Plane stress alone does not settle section {', '.join(unsettled)}: flanges and walls curl out of the "
+            "plane and can carry tens of percent less than both the hand theory and this FE give them. "
             "No station there is given a 'holds'."
         )
     if doubtful:
@@ -65,8 +65,9 @@ def _about_loads(job: Job) -> list[str]:
                 extent = job.member.extent(spread.piece)
                 unit = "deg" if isinstance(job.member.pieces[spread.piece], Arc) else job.units.length
                 found.append(
-                    f"Bearing {spread.name} settles at {spread.centre * extent:.4g} {unit} of piece {spread.piece + 1}, "
-                    f"where the face's normal is parallel to its force, not at {load.share * extent:.4g} {unit}."
+                    f"Bearing {spread.name} settles at {spread.centre * extent:.4g} {unit} of piece "
+                    f"{spread.piece + 1}, where the face's normal is parallel to its force, "
+                    f"not at {load.share * extent:.4g} {unit}."
                 )
     return found
 
@@ -162,7 +163,10 @@ def _first_sentence(station: StationResult, name: FibreName, fibre: Fibre, job: 
             "do not sign off on it alone."
         )
     if fibre.verdict == "low":
-        return f"Do not rely on the hand theory {place}: it is {off:.1f} % low, on the unsafe side, beyond the band of {band}."
+        return (
+            f"Do not rely on the hand theory {place}: it is {off:.1f} % low, on the unsafe side, "
+            f"beyond the band of {band}."
+        )
     return f"The hand theory is {off:.1f} % high {place}, on the safe side but beyond the band of {band}."
 
 

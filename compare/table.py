@@ -219,7 +219,7 @@ def _stations(units: Units, case: CaseResult) -> Table:
         written = [_fibre(stress, fibre) for fibre in fibres]
         distance = station.distance_to_load
         table.add_row(
-            Text(f"{station.name}\n {station.zone or 'not settled'}"),
+            Text(f"{station.name}\n {station.zone or '-'}"),
             ("-" if station.curvature_ratio is None else f"{station.curvature_ratio:.4g}")
             + ("\n-" if distance is None else f"\n{distance:.2f}"),
             f"{force.text(station.N)}\n{force.text(station.V)}",

@@ -16,7 +16,7 @@ _NARROW = 0.5
 
 @dataclass(frozen=True)
 class Comparison:
-    """``difference`` is (hand - best)/reference; ``verdict`` None: within the band, but plane stress cannot settle it."""
+    """``difference`` is (hand - best)/reference; ``verdict`` None: within the band, but not settled by plane stress."""
 
     difference: float | None
     verdict: Verdict | None

@@ -134,8 +134,9 @@ def refine(
 ) -> Refined:
     """Solve until the uncertainty at every compared station is within ``target`` times its larger fibre stress.
 
-    ``compared`` says for each case and station whether it counts; faint ones are held to FAINT. If the ladder of meshes and degrees is used up before
-    the target is met, the last pair is returned: the caller sees from the uncertainties where it falls short.
+    ``compared`` says for each case and station whether it counts; faint ones are held to FAINT. If the ladder of
+    meshes and degrees is used up before the target is met, the last pair is returned: the caller sees from the
+    uncertainties where it falls short.
     """
     levels: list[LevelRecord] = []
     pair: Pair | None = None

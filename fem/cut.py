@@ -26,15 +26,14 @@ def forces_beyond(membrane: Membrane, displacement: Array, forces: Array, line: 
     only_cut = np.zeros((len(membrane.scalars), taken.shape[1], 1))
     only_cut[elements[:, None], on_cut[None, :], 0] = taken[:, on_cut]
     # Forces the cut exerts on the elements beyond it are minus those it exerts on the elements before it.
-    found = resultants(membrane, only_cut)[:, 0]
-    result: Array = found if before else -found
-    return result
+    on_elements: Array = resultants(membrane, only_cut)[:, 0]
+    return on_elements if before else -on_elements
 
 
 def _cut_functions(membrane: Membrane, last: bool) -> Numbers:
     degree, count = membrane.square.degree, membrane.scalars.shape[1]
     line = last_line(degree) if last else first_line(degree)
-    return np.array([*line, *(count + index for index in line)])
+    return np.array([*line, *(count + index for index in line)], dtype=np.int64)
 
 
 def hoop_profile(membrane: Membrane, displacement: Array, columns: tuple[int, ...], line: int, eta: Array) -> Array:

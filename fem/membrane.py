@@ -128,7 +128,7 @@ class Membrane:
     def _condensed(self) -> tuple[Array, Array, Array]:
         """Inverse stiffness of the bubbles, how they follow the skeleton, and the skeleton's own stiffness."""
         shared, own = self._skeleton, self._bubbles
-        inverse = np.linalg.inv(self.stiffness[:, own[:, None], own])
+        inverse: Array = np.asarray(np.linalg.inv(self.stiffness[:, own[:, None], own]), dtype=np.float64)
         coupling = self.stiffness[:, own[:, None], shared]
         following = inverse @ coupling
         stiffness = self.stiffness[:, shared[:, None], shared] - coupling.transpose(0, 2, 1) @ following
