@@ -199,7 +199,7 @@ class Member:
 
     @property
     def size(self) -> float:
-        """The larger side of the box around the datum line's ends and arcs (length): a scale for moments."""
+        """The larger side of the box around the centroid line (length): a scale for moments."""
         shares = np.linspace(0.0, 1.0, 33)
         lines = [self.points(piece, shares, self.centroid(piece, shares)) for piece in range(len(self.pieces))]
         line = np.concatenate(lines, axis=1)

@@ -25,7 +25,7 @@ class Fault:
 def faults(member: Member) -> tuple[Fault, ...]:
     """Every reason why the member cannot exist, in the order of its pieces. Overlap is sought only in a sound one."""
     found = [*_inner_radii(member), *_joints(member), *_turns(member)]
-    return tuple(found or _overlaps(member))
+    return tuple(sorted(found, key=lambda fault: fault.piece) or _overlaps(member))
 
 
 def _inner_radii(member: Member) -> list[Fault]:
@@ -33,14 +33,18 @@ def _inner_radii(member: Member) -> list[Fault]:
     for index, piece in enumerate(member.pieces):
         if isinstance(piece, Straight):
             continue
-        offsets = {
-            "inner": [0.0, 0.0],
-            "centroid": [section.centroid for section in piece.sections],
-            "outer": [section.depth for section in piece.sections],
+        # The centroid of a taper may lie further out between its ends than at either.
+        shares = np.linspace(0.0, 1.0, 65)
+        offset = {
+            "inner": 0.0,
+            "centroid": float(member.centroid(index, shares).max()),
+            "outer": float(member.depth(index, shares).max()),
         }[member.datum]
-        if piece.radius <= max(offsets):
-            text = f"the inner face reaches the centre of curvature: a {member.datum} radius must exceed"
-            found.append(Fault(index, "arc", f"{text} {max(offsets):g} here"))
+        if piece.radius <= offset * (1.0 + _SAME_DEPTH):
+            text = (
+                f"the inner face reaches the centre of curvature: a {member.datum} radius must exceed {offset:g} here"
+            )
+            found.append(Fault(index, "arc", text))
     return found
 
 
