@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import pytest
+from hypothesis import given, settings
+from hypothesis import strategies as st
 
 from intrados.theory import shapes
 from intrados.theory.member import Arc, Datum, Member, Piece, Straight
@@ -106,6 +108,35 @@ FAULTY: dict[str, tuple[Member, int, str, str]] = {
         "overlaps piece 1",
     ),
 }
+
+
+HEADINGS = st.floats(-180.0, 180.0)
+
+
+@given(heading=HEADINGS)
+@settings(deadline=None, max_examples=40)
+def test_a_frame_that_just_closes_is_sound_whichever_way_it_lies(heading: float) -> None:
+    for pieces in (
+        (straight(50.0), arc(40.0, 180.0), straight(100.0), arc(40.0, 180.0), straight(50.0)),
+        (arc(40.0, 180.0), arc(40.0, 180.0)),
+        (arc(40.0, -200.0), arc(40.0, -160.0)),
+    ):
+        assert faults(Member("centroid", (7.0, 3.0), heading, pieces)) == ()
+
+
+@given(heading=HEADINGS, more=st.floats(0.01, 199.0))
+@settings(deadline=None, max_examples=40)
+def test_a_frame_that_goes_on_into_itself_is_faulty_whichever_way_it_lies(heading: float, more: float) -> None:
+    pieces = (straight(50.0), arc(40.0, 180.0), straight(100.0), arc(40.0, 180.0), straight(50.0 + more))
+    (fault,) = faults(Member("centroid", (7.0, 3.0), heading, pieces))
+    assert (fault.piece, fault.key) == (4, "straight")
+
+
+@given(heading=HEADINGS, sweep=st.sampled_from([180.1, 190.0, 198.0, 240.0, 300.0]))
+@settings(deadline=None, max_examples=40)
+def test_a_ring_that_goes_on_into_itself_is_faulty_whichever_way_it_lies(heading: float, sweep: float) -> None:
+    (fault,) = faults(Member("centroid", (7.0, 3.0), heading, (arc(40.0, 180.0), arc(40.0, sweep))))
+    assert (fault.piece, fault.key) == (1, "sweep")
 
 
 @pytest.mark.parametrize("name", FAULTY)

@@ -5,12 +5,16 @@ from __future__ import annotations
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import NDArray
 
 from intrados.theory.member import Arc, Member, Straight
 from intrados.theory.section import Array
 
 _SAME_DEPTH = 1e-9
 _DEGREES_A_CHORD = 6.0
+# Segments that cross within this share of their ends only touch, to rounding.
+_CLEAR = 1e-9
+_HAIR = 1e-6
 
 
 @dataclass(frozen=True)
@@ -87,25 +91,46 @@ def _turns(member: Member) -> list[Fault]:
 
 
 def _overlaps(member: Member) -> list[Fault]:
-    """Pieces whose outline crosses another part of the outline: the polygon of both faces and both ends."""
-    first, second, owner = _outline(member)
-    step = second - first
-    crosses = _cross(step[:, :, None], step[:, None, :])
-    between = first[:, None, :] - first[:, :, None]
-    with np.errstate(divide="ignore", invalid="ignore"):
-        here = _cross(between, step[:, None, :]) / crosses
-        there = _cross(between, step[:, :, None]) / crosses
-    hit = (here > 0.0) & (here < 1.0) & (there > 0.0) & (there < 1.0)
-    count = first.shape[1]
+    """Pieces that cross another part of the outline, the polygon of both faces and both ends; touching is none.
+
+    A piece may also lie on another one exactly, face on face: then its spine, at mid-depth, crosses an end.
+    """
+    outline, spine = _outline(member), _spine(member)
+    count = len(outline.owner)
     apart = np.abs(np.arange(count)[:, None] - np.arange(count)[None, :])
-    hit &= (apart > 1) & (apart < count - 1)
-    if not hit.any():
+    faces = _crossings(outline, outline, _CLEAR) & (apart > 1) & (apart < count - 1)
+    pairs = {tuple(sorted((outline.owner[i], outline.owner[j]))) for i, j in np.argwhere(faces)}
+    through = _crossings(spine, outline, -_CLEAR)
+    pairs |= {tuple(sorted((spine.owner[i], outline.owner[j]))) for i, j in np.argwhere(through)}
+    if not pairs:
         return []
-    pairs = {tuple(sorted((owner[i], owner[j]))) for i, j in np.argwhere(hit)}
     low, high = min(pairs, key=lambda pair: (pair[1], pair[0]))
     kind = "sweep" if isinstance(member.pieces[high], Arc) else "straight"
     with_which = f"piece {low + 1}" if low != high else "itself"
     return [Fault(high, kind, f"the member runs into itself: this piece overlaps {with_which}")]
+
+
+@dataclass(frozen=True)
+class _Segments:
+    """Straight segments from ``first`` to ``second``, both (2, n), and the piece each belongs to."""
+
+    first: Array
+    second: Array
+    owner: list[int]
+
+
+def _crossings(these: _Segments, those: _Segments, clear: float) -> NDArray[np.bool_]:
+    """Which of these cross which of those: inside those, and inside these by the share ``clear`` of their length."""
+    step, other = these.second - these.first, those.second - those.first
+    crosses = _cross(step[:, :, None], other[:, None, :])
+    lengths = np.hypot(*step)[:, None] * np.hypot(*other)[None, :]
+    between = those.first[:, None, :] - these.first[:, :, None]
+    with np.errstate(divide="ignore", invalid="ignore"):
+        here = _cross(between, other[:, None, :]) / crosses
+        there = _cross(between, step[:, :, None]) / crosses
+    hit: NDArray[np.bool_] = np.abs(crosses) > _CLEAR * lengths
+    hit &= (here > clear) & (here < 1.0 - clear) & (there > _CLEAR) & (there < 1.0 - _CLEAR)
+    return hit
 
 
 def _cross(a: Array, b: Array) -> Array:
@@ -113,14 +138,18 @@ def _cross(a: Array, b: Array) -> Array:
     return product
 
 
-def _outline(member: Member) -> tuple[Array, Array, list[int]]:
-    """Start and end points (2, n) of the outline's segments, and the piece each belongs to."""
+def _chords(member: Member, piece: int) -> Array:
+    """Shares of a piece at the ends of the chords that stand for it."""
+    count = max(2, round(member.extent(piece) / _DEGREES_A_CHORD)) if member.turn(piece) else 2
+    return np.linspace(0.0, 1.0, count + 1)
+
+
+def _outline(member: Member) -> _Segments:
     left: list[Array] = []
     right: list[Array] = []
     owners: list[int] = []
-    for index, piece in enumerate(member.pieces):
-        count = max(2, round(abs(piece.sweep) / _DEGREES_A_CHORD)) if isinstance(piece, Arc) else 2
-        shares = np.linspace(0.0, 1.0, count + 1)[0 if index == 0 else 1 :]
+    for index in range(len(member.pieces)):
+        shares = _chords(member, index)[0 if index == 0 else 1 :]
         inner = member.points(index, shares, np.zeros_like(shares))
         outer = member.points(index, shares, member.depth(index, shares))
         left.append(inner if member.sides[index] > 0 else outer)
@@ -128,5 +157,19 @@ def _outline(member: Member) -> tuple[Array, Array, list[int]]:
         owners += [index] * len(shares)
     ring = np.concatenate([*left, *[face[:, ::-1] for face in right[::-1]]], axis=1)
     around = owners + owners[::-1]
-    segment_owner = [max(a, b) for a, b in zip(around, [*around[1:], around[0]], strict=True)]
-    return ring, np.roll(ring, -1, axis=1), segment_owner
+    owner = [max(a, b) for a, b in zip(around, [*around[1:], around[0]], strict=True)]
+    return _Segments(ring, np.roll(ring, -1, axis=1), owner)
+
+
+def _spine(member: Member) -> _Segments:
+    """The line at mid-depth, a hair short of both ends of the member so that it does not cross them itself."""
+    lines = []
+    owner: list[int] = []
+    for index in range(len(member.pieces)):
+        shares = _chords(member, index)
+        shares[0] += _HAIR * (index == 0)
+        shares[-1] -= _HAIR * (index == len(member.pieces) - 1)
+        lines.append(member.points(index, shares, 0.5 * member.depth(index, shares)))
+        owner += [index] * (len(shares) - 1)
+    firsts = np.concatenate([line[:, :-1] for line in lines], axis=1)
+    return _Segments(firsts, np.concatenate([line[:, 1:] for line in lines], axis=1), owner)
