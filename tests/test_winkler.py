@@ -123,6 +123,15 @@ def test_a_straight_has_no_radial_stress(section: Section) -> None:
     assert not radial(section, None, N, M, np.linspace(0.0, section.depth, 9)).any()
 
 
+@pytest.mark.parametrize("ratio", [1e4, 1e6])
+def test_radial_stress_of_a_slender_rectangle_is_the_hoop_flow_over_the_radius(ratio: float) -> None:
+    """With c = x/h: sigma_r R t = 6 M c (1 - c)/h + N (c - 3 c^2 + 2 c^3); the shear takes the rest of N."""
+    R, c = 40.0 * ratio, np.linspace(0.0, 1.0, 9)
+    flow = 6.0 * M * c * (1.0 - c) / 40.0 + N * (c - 3.0 * c**2 + 2.0 * c**3)
+    found = radial(shapes.rectangle(40.0, 20.0), R, N, M, 40.0 * c)
+    assert found * R * 20.0 == pytest.approx(flow, abs=2.0 / ratio * np.abs(flow).max())
+
+
 def test_straight_shear_is_the_handbook_parabola_and_the_four_thirds_of_a_circle() -> None:
     x = np.linspace(0.0, 40.0, 9)
     parabola = 1.5 * V / 800.0 * (1.0 - ((x - 20.0) / 20.0) ** 2)
