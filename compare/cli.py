@@ -10,7 +10,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from intrados.compare.demo import demo_names, demo_text, demo_title
-from intrados.compare.job import Job, read_demo, read_job
+from intrados.compare.job import Job, parse_job, read_job
 from intrados.compare.mistake import JobMistakes
 
 if TYPE_CHECKING:
@@ -30,7 +30,7 @@ def main(arguments: Sequence[str] | None = None) -> int:
     try:
         status: int = options.run(options)
     except JobMistakes as mistakes:
-        print("\n".join(str(mistake) for mistake in mistakes.mistakes), file=sys.stderr)
+        print("\n".join(mistakes.lines), file=sys.stderr)
         return WRONG
     except KeyboardInterrupt:
         print("intrados: stopped; nothing was written", file=sys.stderr)
@@ -82,7 +82,9 @@ class _Version(argparse.Action):
 
 
 def _read(argument: str) -> Job:
-    return read_demo(argument[len(_DEMO) :]) if argument.startswith(_DEMO) else read_job(Path(argument))
+    if argument.startswith(_DEMO):
+        return parse_job(demo_text(argument.removeprefix(_DEMO)).encode(), argument)
+    return read_job(Path(argument))
 
 
 def _check(options: argparse.Namespace) -> int:

@@ -38,7 +38,9 @@ def _cut_functions(membrane: Membrane, last: bool) -> Numbers:
 
 def hoop_profile(membrane: Membrane, displacement: Array, columns: tuple[int, ...], line: int, eta: Array) -> Array:
     """Hoop stress (n) at shares ``eta`` of the depth on a line: the mean of what the columns beside it say."""
-    return np.mean([_hoop_in(membrane, displacement, column, line - column, eta) for column in columns], axis=0)
+    sides = [_hoop_in(membrane, displacement, column, line - column, eta) for column in columns]
+    mean: Array = np.mean(sides, axis=0)
+    return mean
 
 
 def _hoop_in(membrane: Membrane, displacement: Array, column: int, end: int, eta: Array) -> Array:

@@ -19,7 +19,8 @@ from intrados.theory.statics import Loading
 from intrados.theory.station import Station
 
 _SAME = 1e-9
-# A row reaches at most half the depth and, on the tightest arc, to twice the radius it starts from.
+# A row reaches at most half the depth and, on the tightest arc, to twice the radius it starts from, as far as
+# _LEAST_GAP lets it.
 _DEEPEST_ROW = 0.5
 _RADIUS_RATIO = 2.0
 # A column is at most one depth long and turns through 20 degrees at most.
@@ -114,7 +115,7 @@ class Strip:
 def plan(loadings: tuple[Loading, ...], stations: tuple[Station, ...], fineness: int) -> Strip:
     """The strip for a member with a cut at every station, joint and load of any of its load cases.
 
-    Each step of ``fineness`` halves columns and rows again.
+    Each step of ``fineness`` halves the rows and the length a column may have.
     """
     loading = _all_together(loadings)
     member = loading.member

@@ -87,9 +87,12 @@ class Loading:
         forces = sum(math.hypot(w[0], w[1]) for w in wrenches)
         moments = sum(abs(load.moment) for load in self.end_loads) + sum(abs(load.moment) for load in self.spreads)
         balanced = math.hypot(total[0], total[1]) <= _BALANCE * forces
-        if balanced and abs(moment) <= _BALANCE * (forces * self.member.size + moments):
+        scale = forces * self.member.size + moments
+        if balanced and abs(moment) <= _BALANCE * scale:
             return None
-        return Imbalance((float(total[0]), float(total[1])), moment)
+        # What is left by rounding is not worth a digit.
+        x_left, y_left = (float(value) if abs(value) > 1e-12 * forces else 0.0 for value in total[:2])
+        return Imbalance((x_left, y_left), moment if abs(moment) > 1e-12 * scale else 0.0)
 
 
 def end_place(member: Member, end: End) -> tuple[int, float]:

@@ -10,7 +10,7 @@ from intrados.fem.cut import mean_motion
 from intrados.theory import strain_energy
 from intrados.theory.load import End, Vector
 from intrados.theory.section import Array
-from intrados.theory.statics import Loading, end_place
+from intrados.theory.statics import Loading, Support, end_place
 
 _ENDS: tuple[End, End] = ("start", "end")
 
@@ -36,8 +36,10 @@ def displacements(case: SolvedCase) -> tuple[Displacement, ...]:
 def _places(loading: Loading) -> list[tuple[str, int, float, Vector]]:
     """Name, place and point of every load and free end; an end that carries loads bears their names."""
     places = [(spread.name, spread.piece, spread.centre, spread.point) for spread in loading.spreads]
-    for end, support in zip(_ENDS, (loading.start, loading.end), strict=True):
-        if support == "free":
+    supports: tuple[Support, Support] = (loading.start, loading.end)
+    for end, support in zip(_ENDS, supports, strict=True):
+        is_reference = end == "start" and supports == ("free", "free")
+        if support == "free" and not is_reference:
             loads = [load.name for load in loading.end_loads if load.end == end]
             piece, share = end_place(loading.member, end)
             point = loading.member.centroid_point(piece, share)
