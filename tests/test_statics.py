@@ -257,6 +257,14 @@ def test_balance_is_judged_to_a_millionth_of_the_forces(residual: float, balance
     assert (held(frame(), jaw, off, start="free", end="free").imbalance() is None) == balanced
 
 
+@pytest.mark.parametrize(("residual", "balanced"), [(0.9e-6, True), (1.1e-6, False)])
+def test_couples_alone_are_judged_to_a_millionth_of_the_couples(residual: float, balanced: bool) -> None:
+    inside = BodyLoad("inside", 0, 0.5, (0.0, 0.0), 6000.0, 20.0)
+    at_end = EndLoad("at the end", "end", (0.0, 0.0), -6000.0 + residual * 12000.0)
+    free = held(member(straight(200.0)), inside, at_end, start="free", end="free")
+    assert (free.imbalance() is None) == balanced
+
+
 @pytest.mark.parametrize(("start", "end"), [("clamped", "free"), ("free", "clamped")])
 def test_a_clamped_member_balances_whatever_its_loads(start: Support, end: Support) -> None:
     assert held(frame(), clamp()[0], start=start, end=end).imbalance() is None
