@@ -207,6 +207,18 @@ def test_on_a_straight_a_bearing_stays_where_it_is_put() -> None:
     assert enter(member(straight(120.0)), bearing((0.0, -2000.0), share=0.3)).centre == 0.3
 
 
+def test_a_force_given_to_four_digits_is_normal_to_a_straight_face() -> None:
+    curved = member(straight(120.0), heading=30.0)
+    spread = enter(curved, bearing((2500.0, -4330.0)))
+    assert spread.centre == 0.5
+    assert_statically_equal(spread, spread.part_resultants(curved, spread.first, spread.last) @ spread.parts, 1e-12)
+
+
+def test_a_force_a_degree_off_the_normal_of_a_straight_face_is_not() -> None:
+    with pytest.raises(LoadError, match="nowhere on this piece"):
+        enter(member(straight(120.0)), bearing((math.sin(math.radians(1.0)), -1.0)))
+
+
 @each_member
 def test_a_body_load_has_the_resultant_and_moment_of_its_load(name: str) -> None:
     curved = MEMBERS[name]

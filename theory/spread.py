@@ -19,7 +19,8 @@ from intrados.theory.section import Array
 Amounts = tuple[float, float, float]
 
 _ALONG_POINTS = 48
-_PARALLEL = 1e-6
+# The sine up to which a force counts as normal to a straight face: its components are often given to four digits.
+_PARALLEL = 1e-3
 
 
 @dataclass(frozen=True)
