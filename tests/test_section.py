@@ -13,6 +13,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 from polygon_rule import PolygonRule, ellipse_polygon, mirrored
+from rescaling import rescaled
 
 from intrados.theory import shapes
 from intrados.theory.section import Section, SectionError, blend
@@ -296,13 +297,7 @@ def test_an_integral_may_end_a_hair_before_a_round_face() -> None:
 @pytest.mark.parametrize("section", EVERY_SECTION, ids=lambda section: section.shape)
 @pytest.mark.parametrize("unit", [1e-3, 1.0 / 25.4])
 def test_properties_scale_with_the_unit_of_length(section: Section, unit: float) -> None:
-    scaled = Section(
-        section.shape,
-        tuple(
-            type(layer)(layer.inner * unit, layer.outer * unit, tuple(c.scaled(unit, unit) for c in layer.chords))
-            for layer in section.layers
-        ),
-    )
+    scaled = rescaled(section, unit)
     R = section.centroid + 0.7 * section.depth
     assert scaled.area == pytest.approx(section.area * unit**2, rel=1e-13)
     assert scaled.centroid == pytest.approx(section.centroid * unit, rel=1e-13)

@@ -10,6 +10,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 from numpy.typing import NDArray
+from rescaling import rescaled
 
 from intrados.theory import shapes
 from intrados.theory.load import Bearing, BodyLoad, Face, FaceLoad, LoadError, Patch, Vector
@@ -269,16 +270,9 @@ def test_any_patch_has_its_resultant_in_any_unit(
 
 
 def scaled(curved: Member, unit: float) -> Member:
-    def shrink(section: Section) -> Section:
-        layers = tuple(
-            type(layer)(layer.inner * unit, layer.outer * unit, tuple(c.scaled(unit, unit) for c in layer.chords))
-            for layer in section.layers
-        )
-        return Section(section.shape, layers)
-
     pieces: list[Piece] = []
     for piece in curved.pieces:
-        sections = (shrink(piece.sections[0]), shrink(piece.sections[1]))
+        sections = (rescaled(piece.sections[0], unit), rescaled(piece.sections[1], unit))
         if isinstance(piece, Arc):
             pieces.append(Arc(piece.radius * unit, piece.sweep, sections))
         else:

@@ -6,6 +6,7 @@ import math
 
 import numpy as np
 import pytest
+from rescaling import rescaled
 from scipy.integrate import quad
 
 from intrados.theory import shapes
@@ -151,13 +152,7 @@ def test_curved_shear_tends_to_the_straight_one(section: Section) -> None:
 @pytest.mark.parametrize("unit", [1e-3, 1.0 / 25.4])
 def test_stresses_scale_with_the_units(section: Section, unit: float) -> None:
     """Lengths times ``unit`` and forces as they are: stresses go with its inverse square."""
-    scaled = Section(
-        section.shape,
-        tuple(
-            type(layer)(layer.inner * unit, layer.outer * unit, tuple(c.scaled(unit, unit) for c in layer.chords))
-            for layer in section.layers
-        ),
-    )
+    scaled = rescaled(section, unit)
     R, x = radius(section, 0.3), np.linspace(0.0, section.depth, 7)[1:-1]
     for small, large in (
         (hoop(scaled, R * unit, N, M * unit, x * unit), hoop(section, R, N, M, x)),
