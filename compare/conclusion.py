@@ -4,7 +4,8 @@ from __future__ import annotations
 
 from intrados.compare.job import Job
 from intrados.compare.numeral import common_scale
-from intrados.compare.results import Along, Fibre, FibreName, Governing, Peak, StationResult, Units
+from intrados.compare.results import Along, Fibre, FibreName, Governing, Peak, StationResult
+from intrados.compare.units import Units
 from intrados.compare.verdict import is_compact, is_settled
 from intrados.theory.load import BodyLoad, EndLoad
 from intrados.theory.member import Arc, Member

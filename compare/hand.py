@@ -2,11 +2,15 @@
 
 from __future__ import annotations
 
+from functools import lru_cache
+
 import numpy as np
 
 from intrados.compare.job import Job
 from intrados.compare.table import HandRow
 from intrados.theory import winkler
+from intrados.theory.quadrature import Array
+from intrados.theory.section import Section
 
 _DEPTHS = 41
 
@@ -23,7 +27,6 @@ def hand_rows(job: Job, case: int) -> tuple[HandRow, ...]:
         ring = None if R is None else section.ring(R)
         inner, outer = winkler.fibres(section, R, N, M)
         inner_straight, outer_straight = winkler.fibres(section, None, N, M)
-        radial = winkler.radial(section, R, N, M, np.linspace(0.0, section.depth, _DEPTHS))
         rows.append(
             HandRow(
                 station=station.name,
@@ -40,7 +43,21 @@ def hand_rows(job: Job, case: int) -> tuple[HandRow, ...]:
                 outer_hand=outer,
                 inner_straight=inner_straight,
                 outer_straight=outer_straight,
-                radial_max=None if R is None else float(radial[np.argmax(np.abs(radial))]),
+                radial_max=None if R is None else _largest_radial(section, R, N, M),
             )
         )
     return tuple(rows)
+
+
+def _largest_radial(section: Section, R: float, N: float, M: float) -> float:
+    """The radial stress of largest magnitude over the depth."""
+    of_n, of_m = _unit_radials(section, R)
+    radial = N * of_n + M * of_m
+    return float(radial[np.argmax(np.abs(radial))])
+
+
+@lru_cache(maxsize=64)
+def _unit_radials(section: Section, R: float) -> tuple[Array, Array]:
+    """Radial stress over the depth of N = 1 and of M = 1: the stations of an arc share it."""
+    x = np.linspace(0.0, section.depth, _DEPTHS)
+    return winkler.radial(section, R, 1.0, 0.0, x), winkler.radial(section, R, 0.0, 1.0, x)

@@ -13,9 +13,9 @@ from intrados.compare.loads import read_loads, scaled
 from intrados.compare.location import read_place
 from intrados.compare.mistake import JobMistakes, choices, located, nearest, shown
 from intrados.compare.reader import Reader
-from intrados.compare.results import Units
 from intrados.compare.sections import read_sections
 from intrados.compare.toml_lines import Path
+from intrados.compare.units import UNIT_SETS, Units
 from intrados.theory.load import Load, LoadError
 from intrados.theory.member import Arc, Member, Piece, Straight
 from intrados.theory.outline import faults
@@ -23,12 +23,6 @@ from intrados.theory.section import Section
 from intrados.theory.statics import Loading, Support, loading
 from intrados.theory.station import Station, default_stations, named_station, with_named
 
-UNIT_SETS = {
-    "mm-N-MPa": Units("mm", "N", "MPa"),
-    "m-N-Pa": Units("m", "N", "Pa"),
-    "in-lbf-psi": Units("in", "lbf", "psi"),
-    "in-kip-ksi": Units("in", "kip", "ksi"),
-}
 _TABLES = ("title", "units", "material", "section", "member", "ends", "load", "case", "stations", "agreement")
 _MOST_STATIONS = 500
 
@@ -241,7 +235,7 @@ def _read_stations(reader: Reader, data: object, member: Member | None) -> tuple
     if len(defaults) > _MOST_STATIONS:
         reader.add(
             ("stations", "every"),
-            f"given {table.every:g}, which makes {len(defaults)} stations; the member may have {_MOST_STATIONS} at most",
+            f"given {table.every:g}, which makes {len(defaults)} stations; must make {_MOST_STATIONS} at most",
         )
     stations = with_named(defaults, tuple(placed))
     automatic = {station.name for station in stations} - {station.name for station in placed}

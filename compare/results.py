@@ -10,6 +10,8 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Literal
 
+from intrados.compare.units import Units
+
 Verdict = Literal["holds", "low", "high", "unloaded", "not comparable"]
 Zone = Literal["theory", "introduction", "support"]
 FibreName = Literal["inner", "outer"]
@@ -234,15 +236,6 @@ class MeshSummary:
     cells: int
     dofs: int
     levels: tuple[Level, ...]
-
-
-@dataclass(frozen=True)
-class Units:
-    """The names of a job's units, as labels carry them."""
-
-    length: str
-    force: str
-    stress: str
 
 
 @dataclass(frozen=True)

@@ -26,7 +26,7 @@ Vector = Annotated[list[Force], Field(min_length=2, max_length=2)]
 class Table(BaseModel):
     """A table of the job: no unknown key, no number written as text or as a truth value."""
 
-    model_config = ConfigDict(strict=True, extra="forbid", frozen=True)
+    model_config = ConfigDict(strict=True, extra="forbid", frozen=True, defer_build=True)
 
 
 class Material(Table):

@@ -6,7 +6,8 @@ import csv
 import io
 import math
 
-from intrados.compare.results import CaseResult, Fibre, Results, StationResult, Units
+from intrados.compare.results import CaseResult, Fibre, Results, StationResult
+from intrados.compare.units import Units
 
 Cell = str | float | int | None
 

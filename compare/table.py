@@ -13,7 +13,8 @@ from rich.text import Text
 
 from intrados.compare.cautions import CAUTIONS
 from intrados.compare.numeral import Scale, common_scale, percent
-from intrados.compare.results import CaseResult, Fibre, Peak, Results, StationResult, Units
+from intrados.compare.results import CaseResult, Fibre, Peak, Results, StationResult
+from intrados.compare.units import Units
 
 WIDTH = 100
 # A rule of ASCII hyphens under the header and no other line: the same on every terminal and in every pipe.

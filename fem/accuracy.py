@@ -22,7 +22,7 @@ from intrados.fem.membrane import Elastic, Membrane, discretise
 from intrados.fem.mesher import mesh
 from intrados.fem.strip import Strip, plan
 from intrados.theory.load import Face
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 from intrados.theory.statics import Loading
 from intrados.theory.station import Station
 

@@ -4,11 +4,11 @@ from __future__ import annotations
 
 import numpy as np
 
-from intrados.fem.element import basis, unit_gauss
+from intrados.fem.element import basis
 from intrados.fem.introduction import resultants
 from intrados.fem.membrane import Membrane, Numbers, first_line, last_line
 from intrados.fem.trace import across_cut
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array, unit_gauss
 
 
 def forces_beyond(membrane: Membrane, displacement: Array, forces: Array, line: int) -> Array:

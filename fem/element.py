@@ -7,7 +7,7 @@ from functools import lru_cache
 
 import numpy as np
 
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array, unit_gauss
 
 
 @dataclass(frozen=True, eq=False)
@@ -62,10 +62,3 @@ def _basis(degree: int, points: bytes) -> tuple[Array, Array]:
     pairs = [element.lbasis(at, index) for index in range((degree + 1) ** 2)]
     values = np.array([np.broadcast_to(value, at.shape[1]) for value, _ in pairs])
     return values, np.array([gradient for _, gradient in pairs]).transpose(1, 0, 2)
-
-
-@lru_cache(maxsize=64)
-def unit_gauss(points: int) -> tuple[Array, Array]:
-    """Gauss-Legendre points and weights on 0 to 1."""
-    nodes, weights = np.polynomial.legendre.leggauss(points)
-    return 0.5 * (nodes + 1.0), 0.5 * weights

@@ -12,11 +12,11 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.polynomial import legendre
 
-from intrados.fem.element import basis, unit_gauss
+from intrados.fem.element import basis
 from intrados.fem.membrane import Membrane
 from intrados.fem.trace import along_face
 from intrados.theory.load import Face
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array, unit_gauss
 from intrados.theory.spread import FaceSpread, into_material
 from intrados.theory.statics import Loading
 

@@ -8,18 +8,17 @@ from __future__ import annotations
 
 import numpy as np
 
-from intrados.fem.element import basis, unit_gauss
+from intrados.fem.element import basis
 from intrados.fem.membrane import Membrane
 from intrados.fem.trace import across_cut, along_face
 from intrados.theory import winkler
 from intrados.theory.load import EndLoad
+from intrados.theory.quadrature import Array, unit_gauss
 from intrados.theory.rectangle_bar import RectangleBar
-from intrados.theory.section import Array, Section
+from intrados.theory.section import Section
 from intrados.theory.spread import BodySpread, FaceSpread, Spread, face_speed
 from intrados.theory.statics import Loading, end_place, end_wrench
 
-# Beyond this R/h the closed forms of the rectangular bar lose more digits than they gain.
-_SLENDEREST_EXACT = 200.0
 _EXTRA_POINTS = 6
 
 
@@ -111,7 +110,7 @@ def end_distribution(section: Section, R: float | None, x: Array) -> tuple[Array
 
     The exact closed form for a rectangle on an arc; Winkler-Bach, or the straight beam, for any other.
     """
-    if R is not None and section.has_constant_width and R <= _SLENDEREST_EXACT * section.depth:
+    if R is not None and section.has_constant_width:
         bar = RectangleBar(R - section.centroid, R - section.centroid + section.depth, section.widest)
         r = bar.a + x
         return bar.hoop(1.0, 0.0, r), bar.hoop(0.0, 1.0, r), bar.shear(1.0, r)

@@ -17,7 +17,7 @@ from numpy.typing import NDArray
 
 from intrados.fem.element import ReferenceSquare, reference_square
 from intrados.fem.strip import Strip
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 from intrados.theory.statics import Support
 
 Numbers = NDArray[np.int64]

@@ -14,7 +14,8 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from intrados.theory.member import Member
-from intrados.theory.section import Array, Section, common_shares
+from intrados.theory.quadrature import Array
+from intrados.theory.section import Section, common_shares
 from intrados.theory.statics import Loading
 from intrados.theory.station import Station
 

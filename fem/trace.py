@@ -6,7 +6,7 @@ import numpy as np
 
 from intrados.fem.strip import Strip
 from intrados.theory.load import Face
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 
 
 def along_face(strip: Strip, piece: int, face: Face, q: Array) -> tuple[int, Array]:

@@ -10,7 +10,7 @@ from intrados.fem.accuracy import Refined
 from intrados.fem.cut import stresses
 from intrados.fem.element import basis
 from intrados.fem.membrane import Numbers
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 
 # Steps of the lattice along either side of an element: enough for its degree to show.
 _STEPS = 6

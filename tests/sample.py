@@ -33,6 +33,7 @@ from intrados.compare.results import (
     Units,
     Verdict,
 )
+from intrados.compare.units import Units
 
 Array = NDArray[np.float64]
 BAND = 0.05

@@ -24,7 +24,8 @@ from intrados.compare.draw import save_all, style
 from intrados.compare.draw.along import draw_along
 from intrados.compare.draw.member import draw_member
 from intrados.compare.draw.profile import choose, draw_profile
-from intrados.compare.results import CaseResult, Results, Units
+from intrados.compare.results import CaseResult, Results
+from intrados.compare.units import Units
 
 Draw = Callable[[Results, CaseResult], Figure]
 DRAWERS: list[Draw] = [draw_member, draw_along, draw_profile]

@@ -22,7 +22,8 @@ from intrados.fem.introduction import element_forces
 from intrados.fem.membrane import Membrane, discretise
 from intrados.theory.load import BodyLoad, EndLoad
 from intrados.theory.member import Arc, Member, Straight
-from intrados.theory.section import Array, Section
+from intrados.theory.quadrature import Array
+from intrados.theory.section import Section
 from intrados.theory.shapes import box, circle, ellipse, i_section, rectangle, tee, trapezoid, triangle, tube
 from intrados.theory.statics import Loading, Support, loading
 

@@ -16,8 +16,9 @@ from rich.console import RenderableType
 
 from intrados.compare.cautions import CAUTIONS
 from intrados.compare.numeral import common_scale, percent
-from intrados.compare.results import Results, Units
+from intrados.compare.results import Results
 from intrados.compare.table import HandRow, check_table, hand_table, show
+from intrados.compare.units import Units
 
 SAMPLES = [sample.hook, sample.hook_cases, sample.c_frame, sample.bracket, sample.crowded]
 ESCAPE = re.compile(r"\x1b\[[0-9;]*m")

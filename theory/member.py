@@ -13,7 +13,8 @@ from typing import Literal
 
 import numpy as np
 
-from intrados.theory.section import Array, Section, blend
+from intrados.theory.quadrature import Array, unit_gauss
+from intrados.theory.section import Section, blend
 
 Datum = Literal["inner", "centroid", "outer"]
 _LENGTH_POINTS = 16
@@ -178,10 +179,10 @@ class Member:
 
     def _length_to(self, piece: int, share: float) -> float:
         """Length of a piece's centroid line from its start."""
-        nodes, weights = np.polynomial.legendre.leggauss(_LENGTH_POINTS)
-        shares = 0.5 * share * (nodes + 1.0)
+        nodes, weights = unit_gauss(_LENGTH_POINTS)
+        shares = share * nodes
         along, across = self.velocity(piece, shares, self.centroid(piece, shares), self.centroid_rate(piece, shares))
-        return float(0.5 * share * (weights @ np.hypot(along, across)))
+        return float(share * (weights @ np.hypot(along, across)))
 
     @property
     def length(self) -> float:
@@ -199,8 +200,8 @@ class Member:
 
     @property
     def size(self) -> float:
-        """The larger side of the box around the centroid line (length): a scale for moments."""
+        """The largest distance between two points of the centroid line (length): a scale for moments."""
         shares = np.linspace(0.0, 1.0, 33)
         lines = [self.points(piece, shares, self.centroid(piece, shares)) for piece in range(len(self.pieces))]
         line = np.concatenate(lines, axis=1)
-        return float(max(np.ptp(line, axis=1)))
+        return float(np.hypot(*(line[:, :, None] - line[:, None, :])).max())

@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from intrados.theory.member import Arc, Member, Straight
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 
 _SAME_DEPTH = 1e-9
 _DEGREES_A_CHORD = 6.0

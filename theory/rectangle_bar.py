@@ -16,7 +16,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 
 _SLENDER = 0.1
 

@@ -17,12 +17,11 @@ import itertools
 import math
 from collections.abc import Callable
 from dataclasses import dataclass
-from functools import cached_property, lru_cache
+from functools import cached_property
 
 import numpy as np
-from numpy.typing import NDArray
 
-Array = NDArray[np.float64]
+from intrados.theory.quadrature import Array, unit_gauss
 
 # Gauss-Legendre converges like rho^(-2n): n = 19/ln(rho) takes the error to 1e-16.
 _DECADES = 19.0
@@ -259,15 +258,10 @@ def _layer_rule(layer: Layer, outer: float, pole: float | None) -> tuple[Array, 
             root = (z * z - 1.0) ** 0.5
             rho = max(abs(z + root), abs(z - root))
             points = max(points, min(math.ceil(_DECADES / math.log(rho)), _MOST_POINTS))
-    angle, weight = _gauss_angles(points)
+    nodes, weights = unit_gauss(points)
+    angle = math.pi * nodes
     x = mid - half * np.cos(angle)
-    return x, weight * half * np.sin(angle) * layer.width(x)
-
-
-@lru_cache(maxsize=256)
-def _gauss_angles(points: int) -> tuple[Array, Array]:
-    nodes, weights = np.polynomial.legendre.leggauss(points)
-    return 0.5 * math.pi * (nodes + 1.0), 0.5 * math.pi * weights
+    return x, math.pi * half * weights * np.sin(angle) * layer.width(x)
 
 
 def blend(first: Section, second: Section, share: float) -> Section:

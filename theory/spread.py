@@ -14,7 +14,7 @@ import numpy as np
 
 from intrados.theory.load import Bearing, BodyLoad, Face, FaceLoad, LoadError, Patch, Vector
 from intrados.theory.member import Member
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array, unit_gauss
 
 Amounts = tuple[float, float, float]
 
@@ -149,9 +149,8 @@ def _face_velocity(member: Member, piece: int, face: Face, share: Array) -> tupl
 
 
 def _gauss(first: float, last: float) -> tuple[Array, Array]:
-    nodes, weights = np.polynomial.legendre.leggauss(_ALONG_POINTS)
-    half = 0.5 * (last - first)
-    return first + half * (nodes + 1.0), half * weights
+    nodes, weights = unit_gauss(_ALONG_POINTS)
+    return first + (last - first) * nodes, (last - first) * weights
 
 
 def _resultants(density: Array, points: Array, weight: Array) -> Array:

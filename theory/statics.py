@@ -10,7 +10,7 @@ import numpy as np
 
 from intrados.theory.load import End, EndLoad, Load
 from intrados.theory.member import Member
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 from intrados.theory.spread import Spread, enter
 
 Support = Literal["clamped", "free"]

@@ -13,7 +13,8 @@ from dataclasses import dataclass
 
 import numpy as np
 
-from intrados.theory.section import Array, Section
+from intrados.theory.quadrature import Array, unit_gauss
+from intrados.theory.section import Section
 from intrados.theory.statics import Loading
 
 _POINTS = 10
@@ -80,7 +81,7 @@ def _unit_resultants(
 def _slices(loading: Loading, nu: float, piece: int, share: float, from_end: bool) -> list[_Slice]:
     """Gauss slices of the centroid line between the held end and a place."""
     member = loading.member
-    nodes, weights = np.polynomial.legendre.leggauss(_POINTS)
+    nodes, weights = unit_gauss(_POINTS)
     stretches = []
     for index in range(len(member.pieces)):
         first, last = 0.0, 1.0
@@ -92,8 +93,8 @@ def _slices(loading: Loading, nu: float, piece: int, share: float, from_end: boo
     slices = []
     for index, first, last in stretches:
         for node, weight in zip(nodes, weights, strict=True):
-            at = first + 0.5 * (last - first) * (node + 1.0)
-            length = 0.5 * (last - first) * weight * _line_speed(loading, index, at)
+            at = first + (last - first) * node
+            length = (last - first) * weight * _line_speed(loading, index, at)
             slices.append(_slice(loading, nu, index, float(at), float(length)))
     return slices
 

@@ -8,7 +8,8 @@ from __future__ import annotations
 
 import numpy as np
 
-from intrados.theory.section import Array, Section
+from intrados.theory.quadrature import Array
+from intrados.theory.section import Section
 
 
 def hoop(section: Section, R: float | None, N: float, M: float, x: Array) -> Array:

@@ -11,7 +11,7 @@ from intrados.compare.job import Job
 from intrados.compare.zone import Place
 from intrados.fem.accuracy import FACES, FAINT, CaseSolution, Pair
 from intrados.fem.membrane import Membrane
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 from intrados.theory.statics import Loading
 
 

@@ -7,7 +7,7 @@ import numpy as np
 from intrados.compare.check.case import SolvedCase
 from intrados.compare.results import Field
 from intrados.fem.cut import along, stresses
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 
 _PER_ELEMENT = 4
 

@@ -6,7 +6,7 @@ import numpy as np
 
 from intrados.compare.results import LoadMark
 from intrados.theory.load import EndLoad
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 from intrados.theory.spread import FaceSpread, Spread, face_points
 from intrados.theory.statics import Loading, end_place
 

@@ -9,7 +9,7 @@ from intrados.compare.results import Displacement
 from intrados.fem.cut import mean_motion
 from intrados.theory import strain_energy
 from intrados.theory.load import End, Vector
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 from intrados.theory.statics import Loading, Support, end_place
 
 _ENDS: tuple[End, End] = ("start", "end")

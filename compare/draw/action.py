@@ -10,7 +10,8 @@ from matplotlib.path import Path
 from intrados.compare.draw import style
 from intrados.compare.draw.placing import Placer, Point, pair
 from intrados.compare.numeral import common_scale
-from intrados.compare.results import End, Field, LoadMark, Units
+from intrados.compare.results import End, Field, LoadMark
+from intrados.compare.units import Units
 
 _ARROW = 38.0  # points, the longest arrow
 
