@@ -13,8 +13,9 @@ from intrados.fem.mesher import mesh
 from intrados.fem.strip import Strip, plan
 from intrados.theory.load import EndLoad
 from intrados.theory.member import Arc, Member
+from intrados.theory.quadrature import Array
 from intrados.theory.rectangle_bar import RectangleBar
-from intrados.theory.section import Array, Section
+from intrados.theory.section import Section
 from intrados.theory.shapes import rectangle
 from intrados.theory.statics import Loading, Support, loading
 from intrados.theory.station import Station

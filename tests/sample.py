@@ -30,7 +30,6 @@ from intrados.compare.results import (
     Results,
     SectionSummary,
     StationResult,
-    Units,
     Verdict,
 )
 from intrados.compare.units import Units
