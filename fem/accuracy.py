@@ -17,7 +17,7 @@ from typing import Any
 import numpy as np
 
 from intrados.fem.fibre import FaceStress, face_stress
-from intrados.fem.introduction import element_forces
+from intrados.fem.introduction import forces_inside, forces_on_ends
 from intrados.fem.membrane import Elastic, Membrane, discretise
 from intrados.fem.mesher import mesh
 from intrados.fem.strip import Strip, plan
@@ -42,7 +42,10 @@ LADDER = ((0, (4, 5, 6, 7, 8, 9, 10)), (1, (7, 8, 9, 10)))
 
 @dataclass(frozen=True, eq=False)
 class CaseSolution:
-    """One load case solved at one degree: element ``forces``, ``displacement`` (unknowns) and both faces' stress."""
+    """One load case solved at one degree: ``displacement`` (unknowns) and the stress along both faces.
+
+    ``forces`` are the element forces of the loads between the ends, which cuts take into account.
+    """
 
     loading: Loading
     forces: Array
@@ -174,8 +177,9 @@ def _degrees(
 
 def solve(membrane: Membrane, loadings: tuple[Loading, ...]) -> Solution:
     """All load cases on one factorisation."""
-    forces = [element_forces(membrane, loading) for loading in loadings]
-    displacements = membrane.solve(np.stack(forces, axis=2))
+    forces = [forces_inside(membrane, loading) for loading in loadings]
+    total = [inside + forces_on_ends(membrane, loading) for inside, loading in zip(forces, loadings, strict=True)]
+    displacements = membrane.solve(np.stack(total, axis=2))
     cases = [
         CaseSolution(
             loading,

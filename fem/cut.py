@@ -14,8 +14,9 @@ from intrados.theory.quadrature import Array, unit_gauss
 def forces_beyond(membrane: Membrane, displacement: Array, forces: Array, line: int) -> Array:
     """Fx, Fy and moment about the origin, shape (3), that the part beyond a line exerts on the part before it.
 
-    From nodal forces: what the stiffness of the elements before the line has taken up, less the loads on them. The
-    sum is over the cut's own unknowns, which is exact on any mesh; ``forces`` are the consistent element forces.
+    From nodal forces: what the stiffness of the elements beside the line has taken up, less the loads on them. The
+    sum is over the cut's own unknowns, which is exact on any mesh; ``forces`` are the consistent element forces of
+    the loads between the ends, so that on the line of an end the answer is the load or the reaction there.
     """
     before = line == len(membrane.strip.columns)
     column = line - 1 if before else line
