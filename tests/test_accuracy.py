@@ -14,7 +14,7 @@ from intrados.fem import accuracy
 from intrados.fem.accuracy import FACES, Pair, refine
 from intrados.theory.load import Bearing, BodyLoad, EndLoad, FaceLoad, Patch
 from intrados.theory.member import Arc, Member, Straight
-from intrados.theory.section import Array
+from intrados.theory.quadrature import Array
 from intrados.theory.shapes import rectangle, tee, trapezoid
 from intrados.theory.statics import Loading, loading
 from intrados.theory.station import Station
