@@ -15,6 +15,7 @@ from functools import cached_property
 from typing import Any
 
 import numpy as np
+from threadpoolctl import threadpool_limits
 
 from intrados.fem.fibre import FaceStress, face_stress
 from intrados.fem.introduction import forces_inside, forces_on_ends
@@ -139,22 +140,24 @@ def refine(
 
     ``compared`` says for each case and station whether it counts; faint ones are held to FAINT. If the ladder of
     meshes and degrees is used up before the target is met, the last pair is returned: the caller sees from the
-    uncertainties where it falls short.
+    uncertainties where it falls short. All on one BLAS thread: on narrow bands more of them only wait for each other,
+    and sums would come out differently on another machine.
     """
     levels: list[LevelRecord] = []
     pair: Pair | None = None
-    for solutions in _meshes(loadings, stations, elastic):
-        before: Solution | None = None
-        for solution in solutions:
-            worst = None
-            if before is not None:
-                pair = Pair(before, solution)
-                worst = _worst(pair, stations, compared)
-            membrane = solution.membrane
-            levels.append(LevelRecord(membrane.square.degree, len(membrane.scalars), membrane.unknowns, worst))
-            if pair is not None and worst is not None and worst <= target:
-                return Refined(pair, tuple(levels))
-            before = solution
+    with threadpool_limits(limits=1, user_api="blas"):
+        for solutions in _meshes(loadings, stations, elastic):
+            before: Solution | None = None
+            for solution in solutions:
+                worst = None
+                if before is not None:
+                    pair = Pair(before, solution)
+                    worst = _worst(pair, stations, compared)
+                membrane = solution.membrane
+                levels.append(LevelRecord(membrane.square.degree, len(membrane.scalars), membrane.unknowns, worst))
+                if pair is not None and worst is not None and worst <= target:
+                    return Refined(pair, tuple(levels))
+                before = solution
     assert pair is not None
     return Refined(pair, tuple(levels))
 

@@ -4,9 +4,6 @@ import os
 import sys
 from pathlib import Path
 
-# Read by the libraries when they load: test workers share the processors, and threads of each would fight for them.
-os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
-
 # Tests run in as many processes as there are cores: more threads than one in each would only fight for them.
 # It counts only if it is set before numpy is first imported, which is here.
 os.environ.setdefault("OPENBLAS_NUM_THREADS", "1")
