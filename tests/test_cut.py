@@ -10,6 +10,9 @@ import numpy as np
 import pytest
 from bars import STEEL, fibres, pulled, pulled_through_centre, rectangular_bar, solved, stations
 
+from intrados.compare.check import check
+from intrados.compare.demo import demo_names, demo_text
+from intrados.compare.job import parse_job
 from intrados.fem.accuracy import Solution
 from intrados.fem.cut import forces_beyond, hoop_profile, local_q, mean_motion
 from intrados.fem.membrane import Elastic
@@ -100,6 +103,15 @@ def test_resultants_from_nodal_forces_are_those_of_statics(name: str, degree: in
     largest = np.abs(statics).max(axis=0)
     assert off[:, :2].max() <= 1e-8 * largest[:2].max()
     assert off[:, 2].max() <= 1e-8 * largest[2]
+
+
+@pytest.mark.parametrize("name", demo_names())
+def test_resultants_of_every_demo_are_those_of_statics(name: str) -> None:
+    """To 1e-8 of the largest, at every station of every case, on the mesh that is reported."""
+    for case in check(parse_job(demo_text(name).encode(), name)).results.cases:
+        assert case.force_residual <= 1e-8
+        assert case.moment_residual <= 1e-8
+        assert len(case.stations) >= 5
 
 
 def test_hoop_stress_over_the_depth_is_the_exact_bars() -> None:
