@@ -150,19 +150,20 @@ def bar(section: Section, R: float | None, nu: float) -> IdealBar:
         raise ValueError(f"inner face at radius {R - section.centroid:g} reaches the centre of curvature")
     degrees = [_FIRST_DEGREE] * len(section.layers)
     while True:
-        series = _stationary(section, R, nu, degrees)
-        largest = np.max([np.abs(layer.strain).max(axis=0) for layer in series], axis=0)
-        tails = [float((np.abs(layer.strain[-_TAIL:]) / largest).max()) for layer in series]
+        found = bar_of_degree(section, R, nu, degrees)
+        largest = np.max([np.abs(layer.strain).max(axis=0) for layer in found.series], axis=0)
+        tails = [float((np.abs(layer.strain[-_TAIL:]) / largest).max()) for layer in found.series]
         longer = [
             min(int(_GROWTH * degree), _LAST_DEGREE) if tail > _ROUNDING else degree
             for degree, tail in zip(degrees, tails, strict=True)
         ]
         if longer == degrees:
-            return CurvedBar(section, R, nu, series)
+            return found
         degrees = longer
 
 
-def _stationary(section: Section, R: float, nu: float, degrees: Sequence[int]) -> tuple[LayerSeries, ...]:
+def bar_of_degree(section: Section, R: float, nu: float, degrees: Sequence[int]) -> CurvedBar:
+    """The bar of stationary energy among series of the given degree in each layer; ``bar`` finds the degrees."""
     basis = flow_basis(section, R, degrees)
     weighted_z = basis.weight * basis.z
     moment_alone, force_through_centre = basis.energies((1, nu), (2, nu - 1.0))
@@ -179,7 +180,8 @@ def _stationary(section: Section, R: float, nu: float, degrees: Sequence[int]) -
     pull, _ = _constrained(force_through_centre, conditions, np.array([0.0, weighted_z @ g]), -R * load)
     both = np.stack([bending, pull], axis=1)
     ends = np.cumsum([degree + 1 for degree in degrees])[:-1]
-    return tuple(LayerSeries(part, flow @ both) for part, flow in zip(np.split(both, ends), basis.flows, strict=True))
+    parts = zip(np.split(both, ends), basis.flows, strict=True)
+    return CurvedBar(section, R, nu, tuple(LayerSeries(part, flow @ both) for part, flow in parts))
 
 
 def _constrained(energy: Array, conditions: Array, values: Array, load: Array) -> tuple[Array, Array]:
