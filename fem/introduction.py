@@ -11,11 +11,9 @@ import numpy as np
 from intrados.fem.element import basis
 from intrados.fem.membrane import Membrane
 from intrados.fem.trace import across_cut, along_face
-from intrados.theory import winkler
+from intrados.theory import ideal
 from intrados.theory.load import EndLoad
 from intrados.theory.quadrature import Array, unit_gauss
-from intrados.theory.rectangle_bar import RectangleBar
-from intrados.theory.section import Section
 from intrados.theory.spread import BodySpread, FaceSpread, Spread, face_speed
 from intrados.theory.statics import Loading, end_place, end_wrench
 
@@ -92,10 +90,11 @@ def _spread_parts(membrane: Membrane, spread: Spread) -> Array:
 
 
 def _end_parts(membrane: Membrane, load: EndLoad) -> Array:
-    """Unit N, V and M on an end as the exact bar distributes them: tractions along the cut's tangent and normal."""
+    """Unit N, V and M on an end as the ideal bar distributes them: tractions along the cut's tangent and normal."""
     strip, member = membrane.strip, membrane.strip.member
     piece, share = end_place(member, load.end)
-    section, R = member.section(piece, share), member.radius(piece, share)
+    section = member.section(piece, share)
+    bar = ideal.bar(section, member.radius(piece, share), membrane.elastic.nu)
     tangent, inward = member.tangent(piece, np.array([share])), member.inward(piece, np.array([share]))
     parts = np.zeros((*membrane.vectors.shape, 3))
     column = 0 if load.end == "start" else len(strip.columns) - 1
@@ -103,28 +102,13 @@ def _end_parts(membrane: Membrane, load: EndLoad) -> Array:
     for index, row in enumerate(strip.rows):
         inner = strip.inner_share(piece, row.eta(q))
         x = inner * section.depth
-        hoop_n, hoop_m, tau = end_distribution(section, R, x)
-        density = np.array([hoop_n * tangent, -tau * inward, hoop_m * tangent])
+        density = np.array(
+            [bar.hoop(1.0, 0.0, x) * tangent, -bar.shear(1.0, x) * inward, bar.hoop(0.0, 1.0, x) * tangent]
+        )
         area = np.abs(row.eta_rate(q)) * section.depth * strip.width(piece, np.array(share), inner)
         values, _ = basis(membrane.square.degree, across_cut(share if load.end == "end" else 0.0, q))
         parts[column * membrane.rows + index] = _tested(values, density, weight * area)
     return parts
-
-
-def end_distribution(section: Section, R: float | None, x: Array) -> tuple[Array, Array, Array]:
-    """Hoop stress of N = 1 and of M = 1, and shear stress of V = 1, over the depth of an end (1/length^2, 1/length^3).
-
-    The exact closed form for a rectangle on an arc; Winkler-Bach, or the straight beam, for any other.
-    """
-    if R is not None and section.has_constant_width:
-        bar = RectangleBar(R - section.centroid, R - section.centroid + section.depth, section.widest)
-        r = bar.a + x
-        return bar.hoop(1.0, 0.0, r), bar.hoop(0.0, 1.0, r), bar.shear(1.0, r)
-    return (
-        winkler.hoop(section, R, 1.0, 0.0, x),
-        winkler.hoop(section, R, 0.0, 1.0, x),
-        winkler.shear(section, R, 1.0, x),
-    )
 
 
 def _tested(values: Array, density: Array, weight: Array) -> Array:

@@ -6,15 +6,16 @@ import math
 
 import numpy as np
 import pytest
-from bars import STEEL, bar, exact_fibres, fibres, pulled, solved, stations, strip_and_mesh
+from bars import STEEL, bar, fibres, pulled, solved, stations, strip_and_mesh
 
 from intrados.fem.accuracy import Solution
 from intrados.fem.cut import stresses
 from intrados.fem.element import basis
 from intrados.fem.fibre import pressed
-from intrados.fem.introduction import end_distribution, forces_inside, forces_on_ends, resultants
+from intrados.fem.introduction import forces_inside, forces_on_ends, resultants
 from intrados.fem.membrane import Membrane, discretise
 from intrados.fem.trace import along_face
+from intrados.theory import ideal
 from intrados.theory.load import Bearing, BodyLoad, EndLoad, Face, FaceLoad, Load, Patch
 from intrados.theory.member import Arc, Member, Straight
 from intrados.theory.quadrature import Array
@@ -167,27 +168,19 @@ SECTIONS = [
 
 
 @pytest.mark.parametrize("section", SECTIONS, ids=lambda section: section.shape)
-@pytest.mark.parametrize("R_over_depth", [0.8, 3.0, 150.0, 1e3, math.inf])
-def test_the_distribution_on_an_end_has_its_unit_resultants(section: Section, R_over_depth: float) -> None:
-    R = None if math.isinf(R_over_depth) else R_over_depth * section.depth
-    x, area = section.quadrature(math.inf if R is None else R)
-    hoop_n, hoop_m, tau = end_distribution(section, R, x)
-    lever = section.centroid - x
-    digits = 1e-9
-    assert area @ hoop_n == pytest.approx(1.0, rel=digits)
-    assert area @ (hoop_n * lever) == pytest.approx(0.0, abs=digits * section.depth)
-    assert area @ hoop_m == pytest.approx(0.0, abs=digits / section.depth)
-    assert area @ (hoop_m * lever) == pytest.approx(1.0, rel=digits)
-    assert area @ tau == pytest.approx(1.0, rel=digits)
-
-
-def test_an_end_load_on_a_rectangle_disturbs_nothing() -> None:
-    """As near to the end as a hundredth of the arc the exact bar holds; other sections enter as hand theory has it."""
-    member = bar(rectangle(40.0, 10.0), 20.0, 120.0)
+def test_an_end_load_disturbs_nothing(section: Section) -> None:
+    """As near to the end as a hundredth of the arc the ideal bar holds: it is how an end load is spread."""
+    member = bar(section, 0.5 * section.depth, 120.0)
     case = loading(member, "free", "free", (*pulled(member, (800.0, 500.0), 3e4),))
     at = stations((0, 0.01), (0, 0.5), (0, 0.99))
-    exact = exact_fibres(case, at)
-    assert np.abs(fibres(solved(case, at, 9), at) - exact).max() <= 1e-6 * np.abs(exact).max()
+    found = ideal.bar(section, member.radius(0, 0.0), STEEL.nu)
+    exact = []
+    for station in at:
+        N, _, M = case.resultants(0, station.share)
+        exact.append(found.fibres(N, M))
+    # In the corner of an end whose face has no width the elements converge more slowly: 1e-6 takes two degrees more.
+    digits = 3e-5 if section.inner_width == 0.0 else 1e-6
+    assert np.abs(fibres(solved(case, at, 9), at) - exact).max() <= digits * np.abs(exact).max()
 
 
 def test_a_load_stays_on_its_own_stretch_of_face() -> None:
