@@ -93,7 +93,8 @@ Chord = StraightChord | EllipticChord
 class Layer:
     """A part of the depth, from ``inner`` to ``outer``, over which the width is smooth.
 
-    ``void`` are chords of a hollow about the plane of bending: what ``chords`` add up to is the solid on both its sides.
+    ``void`` are chords of a hollow about the plane of bending; what ``chords`` add up to is the solid on both its
+    sides.
     """
 
     inner: float

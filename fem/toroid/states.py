@@ -4,19 +4,19 @@ Bending (n = 0): u_r = U, u_z = W, u_theta = k r theta. With the rigid part -k R
 hoop strain k x/r, x = r - R, so that nothing cancels in a slender bar.
 
 Force through the centre (n = 1): u_r = U cos, u_z = W cos, u_theta = V sin + D theta cos. Its hoop strain is S/r with
-S = U + V + D, its shear strains S,r - U,r - (S - 2D)/r and S,z - U,z - W/r. With D = -k R/2 the bending state's own U, W
-and S = k x + U solve it but for these shears, which are of the order of the force alone; what is left, (u, w, s), is
-solved for. It is of that order too: the state per unit force keeps its digits at any R/h.
+S = U + V + D, its shear strains S,r - U,r - (S - 2D)/r and S,z - U,z - W/r. With D = -k R/2 the bending state's own
+U, W and S = k x + U solve it but for these shears, which are of the order of the force alone; what is left,
+(u, w, s), is solved for. It is of that order too: the state per unit force keeps its digits at any R/h.
 
-Either field obeys int sigma : eps r dA = 0 for every virtual displacement of the space, hence N = 0 in bending, and
-int sigma_theta r dA = 0 and int tau dA = int sigma_theta dA for the force, to rounding on any mesh.
+Either field obeys int sigma : eps r dA = 0 for every virtual displacement of the space. Those that are even, r and x
+lie in it: hence N = 0 in bending, and int sigma_theta r dA = 0 and int tau dA = int sigma_theta dA for the force, to
+rounding on any mesh.
 """
 
 from __future__ import annotations
 
 from dataclasses import dataclass
 from functools import cached_property
-from typing import Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -128,6 +128,24 @@ class Lattice:
         ss = stiff * nn + mu * (rr - nr - _turned(nr) + nn) + mu * zz
         return _blocks([[uu, uw, us], [_turned(uw), ww, ws], [_turned(us), _turned(ws), ss]])
 
+    def hoop_source(self, strain: Array, stretched: int) -> Array:
+        """Cell forces of a given hoop ``strain`` (cells, points); the virtual one is component ``stretched`` over r."""
+        lam, mu = self.lame
+        pressing = self.area * lam * strain * (self.R + self.local)
+        parts = [-_tested(self.by_r, pressing), -_tested(self.by_z, pressing)]
+        parts += [np.zeros_like(parts[0])] * (stretched - 1)
+        parts[stretched] = parts[stretched] - (self.area * (lam + 2.0 * mu) * strain) @ self.values.T
+        return np.concatenate(parts, axis=1)
+
+    def shear_source(self, bending: Field) -> Array:
+        """Cell forces on u, w, s of the hoop stress of bending and of the shears that its U and W bring along."""
+        mu, n = self.lame[1], self.values
+        U, W = bending.moved @ n
+        over_r = mu * self.area / (self.R + self.local)
+        carried = (self.area * bending.hoop) @ n.T
+        sheared = mu * (_tested(self.by_r, self.area * U) + _tested(self.by_z, self.area * W))
+        return np.concatenate([carried - sheared, -(over_r * W) @ n.T, sheared - (over_r * U) @ n.T - carried], axis=1)
+
     @cached_property
     def on_plane(self) -> Numbers:
         """Nodes on the plane of bending."""
@@ -153,7 +171,7 @@ def lattice(half: HalfSection, R: float, nu: float, degree: int) -> Lattice:
 
 
 def _numbered(points: Array, shape: tuple[int, ...], on_side: NDArray[np.bool_], depth: float) -> Numbers:
-    """Numbers of the nodes (cells, nodes): one for all that lie at one place, those on sides first, in a narrow band."""
+    """Numbers of the nodes (cells, nodes): one for all at one place, those on sides of cells first and banded."""
     from scipy.sparse import coo_array
     from scipy.sparse.csgraph import reverse_cuthill_mckee
     from scipy.spatial import cKDTree
@@ -178,12 +196,12 @@ def _numbered(points: Array, shape: tuple[int, ...], on_side: NDArray[np.bool_],
 
 
 def _solve(lattice: Lattice, stiffness: Array, forces: Array, held: Numbers) -> Array:
-    """Displacements (components, cells, nodes) from cell stiffness and cell forces (cells, components * nodes).
+    """Displacements (cases, components, cells, nodes) under cell forces (cells, components * nodes, cases).
 
     What lives inside a cell is eliminated there; the rest is a banded Cholesky factor. ``held`` unknowns
     (node * components + component) are zero.
     """
-    from scipy.linalg import cholesky_banded, cho_solve_banded
+    from scipy.linalg import cho_solve_banded, cholesky_banded
 
     nodes = lattice.numbers.shape[1]
     components = stiffness.shape[1] // nodes
@@ -192,10 +210,10 @@ def _solve(lattice: Lattice, stiffness: Array, forces: Array, held: Numbers) -> 
     shared, own = np.flatnonzero(on_side), np.flatnonzero(~on_side)
     inner = stiffness[:, own[:, None], own]
     coupling = stiffness[:, own[:, None], shared]
-    following = np.linalg.solve(inner, np.concatenate([coupling, forces[:, own, None]], axis=2))
-    following, alone = following[:, :, :-1], following[:, :, -1]
+    solved = np.linalg.solve(inner, np.concatenate([coupling, forces[:, own]], axis=2))
+    following, alone = solved[:, :, : len(shared)], solved[:, :, len(shared) :]
     condensed = stiffness[:, shared[:, None], shared] - coupling.transpose(0, 2, 1) @ following
-    passed = forces[:, shared] - (coupling.transpose(0, 2, 1) @ alone[:, :, None])[:, :, 0]
+    passed = forces[:, shared] - coupling.transpose(0, 2, 1) @ alone
     at = unknowns[:, shared]
     size = int(at.max()) + 1
     rows = np.repeat(at[:, :, None], at.shape[1], axis=2)
@@ -207,14 +225,15 @@ def _solve(lattice: Lattice, stiffness: Array, forces: Array, held: Numbers) -> 
     place = (rows - columns)[keep] * size + columns[keep]
     band = np.bincount(place, weights=condensed[keep], minlength=width * size).reshape(width, size)
     band[0, held] = 1.0
-    right = np.bincount(at.ravel(), weights=passed.ravel(), minlength=size)
+    right = np.zeros((size, forces.shape[2]))
+    np.add.at(right, at, passed)
     right[held] = 0.0
     factor = cholesky_banded(band, lower=True, overwrite_ab=True, check_finite=False)
     moved = cho_solve_banded((factor, True), right, check_finite=False)
-    result = np.empty(unknowns.shape)
+    result = np.empty(forces.shape)
     result[:, shared] = moved[at]
-    result[:, own] = alone - (following @ moved[at][:, :, None])[:, :, 0]
-    split: Array = result.reshape(-1, components, nodes).transpose(1, 0, 2)
+    result[:, own] = alone - following @ moved[at]
+    split: Array = result.reshape(-1, components, nodes, forces.shape[2]).transpose(3, 1, 0, 2)
     return split
 
 
@@ -223,8 +242,9 @@ class Field:
     """Stress (for Young's modulus 1) at the quadrature points, (cells, points) each, and what it adds up to.
 
     ``hoop`` is sigma_theta; ``radial``, ``across`` (along z) and ``shear`` (r-z) are the others in the section. Shear
-    stress of the cut itself follows V, not N and M, and is not in it. ``moved`` are the nodal displacements U, W of the section
-    and ``stretch`` the nodal values whose quotient by r is the hoop strain, less the source ``bent`` x/r.
+    stress of the cut itself follows V, not N and M, and is not in it. ``moved`` are the nodal displacements U, W of the
+    section (but for a constant U) and ``stretch`` the nodal values whose quotient by r is the hoop strain, less the
+    source ``bent`` x/r.
     """
 
     lattice: Lattice
@@ -243,7 +263,9 @@ class Field:
 
     def plus(self, other: Field) -> Field:
         """The sum of two fields."""
-        parts = [(field.moved, field.stretch, field.hoop, field.radial, field.across, field.shear) for field in (self, other)]
+        parts = [
+            (field.moved, field.stretch, field.hoop, field.radial, field.across, field.shear) for field in (self, other)
+        ]
         return Field(self.lattice, self.bent + other.bent, *(one + two for one, two in zip(*parts, strict=True)))
 
     @property
@@ -285,49 +307,43 @@ def _along(derivative: Array, nodal: Array) -> Array:
 
 @dataclass(frozen=True, eq=False)
 class States:
-    """Fields per unit moment and per unit force (without moment about the centroid), and checks of equilibrium.
+    """Fields per unit moment and per unit force, the latter without a moment about the centroid.
 
-    ``shear_force`` is int tau dA of a unit force through the centre of curvature where it acts as shear, and
-    ``hoop_moment`` int sigma_theta r dA where it acts as normal force, over R: 1 and 0 by equilibrium.
+    ``shear_force`` is int tau dA of a unit force through the centre of curvature where it acts as shear: 1 by
+    equilibrium, and a check of the solution.
     """
 
     per_M: Field
     per_N: Field
     shear_force: float
-    hoop_moment: float
 
 
 def states(lattice: Lattice) -> States:
     """Both states of the section at one degree."""
-    lam, mu = lattice.lame
-    n, area, x = lattice.values, lattice.area, lattice.local
-    r = lattice.R + x
-    held = 2 * lattice.on_plane + 1
-    pressing = lam * x * area
-    forces = [
-        -_tested(lattice.by_r, pressing) - (area * (lam + 2.0 * mu) * x / r) @ n.T,
-        -_tested(lattice.by_z, pressing),
-    ]
-    bent = _solve(lattice, lattice.bending_stiffness(), np.concatenate(forces, axis=1), held)
-    bending = _stress(lattice, 1.0, bent, bent[0])
+    R, nodal_r = lattice.R, lattice.R + lattice.position[0] - lattice.half.section.centroid
+    r = R + lattice.local
+    plane = lattice.on_plane
 
-    U, W = bent @ n
-    carried = (area * bending.hoop) @ n.T
-    sheared = mu * (_tested(lattice.by_r, area * U) + _tested(lattice.by_z, area * W))
-    forces = [
-        carried - sheared,
-        -mu * (area * W / r) @ n.T,
-        sheared - mu * (area * U / r) @ n.T - carried,
-    ]
-    pinned = 3 * int(lattice.on_plane[0])
-    held = np.append(3 * lattice.on_plane + 1, pinned)
-    u, w, s = _solve(lattice, lattice.force_stiffness(), np.concatenate(forces, axis=1), held)
+    # The rigid part of U, and below the even extension of s, have next to no stiffness in a slender bar: they are held
+    # at one node and found from equilibrium instead.
+    forces = np.stack([lattice.hoop_source(lattice.local / r, 0), lattice.hoop_source(1.0 / r, 0)], axis=2)
+    given, shifted = _solve(lattice, lattice.bending_stiffness(), forces, np.append(2 * plane + 1, 2 * plane[0]))
+    bending, shift = _stress(lattice, 1.0, given, given[0]), _stress(lattice, 0.0, shifted, shifted[0] + 1.0)
+    bending = bending.plus(shift.times(-bending.N / shift.N))
+
+    forces = np.stack([lattice.shear_source(bending), lattice.hoop_source(np.ones_like(r), 2)], axis=2)
+    held = np.concatenate([3 * plane + 1, 3 * plane[:1], 3 * plane[:1] + 2])
+    (u, w, s), (ue, we, se) = _solve(lattice, lattice.force_stiffness(), forces, held)
     rest = _stress(lattice, 0.0, np.array([u, w]), s)
-    tau = mu * (_along(lattice.by_r, s - u) - (s @ n + U) / r)
+    extension = _stress(lattice, 0.0, np.array([ue, we]), se + nodal_r)
+    share = (bending.M + rest.M - R * rest.N) / (R * extension.N - extension.M)
+    rest = rest.plus(extension.times(share))
+    s, u = s + share * se, u + share * ue
+    tau = lattice.lame[1] * (_along(lattice.by_r, s - u) - (s + bending.moved[0]) @ lattice.values / r)
     P = rest.N
     per_M = bending.times(1.0 / bending.M)
     per_N = rest.times(1.0 / P).plus(per_M.times(-rest.M / P))
-    return States(per_M, per_N, 2.0 * float((tau * area).sum()) / P, 1.0 - (bending.M + rest.M) / (P * lattice.R))
+    return States(per_M, per_N, 2.0 * float((tau * lattice.area).sum()) / P)
 
 
 def _tested(derivative: Array, weight: Array) -> Array:
