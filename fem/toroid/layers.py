@@ -145,8 +145,13 @@ def _run(section: Section, index: int, way: int) -> float:
         index += way
         if 0 <= index < len(section.layers):
             other = section.layers[index]
-            ends = [(_at(one.half_void, end), _at(one.half_outline, end)) for one in (layer, other)]
-            if np.abs(np.subtract(*ends)).max() > SAME * section.depth:
+            if (
+                max(
+                    abs(_at(layer.half_void, end) - _at(other.half_void, end)),
+                    abs(_at(layer.half_outline, end) - _at(other.half_outline, end)),
+                )
+                > SAME * section.depth
+            ):
                 break
     return total
 

@@ -49,7 +49,8 @@ class SectionMap:
 
     def hoop(self, N: float, M: float) -> Array:
         """Hoop stress (n) under N and M."""
-        return N * self.stress[0, 0] + M * self.stress[0, 1]
+        hoop: Array = N * self.stress[0, 0] + M * self.stress[0, 1]
+        return hoop
 
 
 def face_trace(states: States, face: FaceCells, side: Face) -> FaceTrace:
@@ -74,8 +75,9 @@ def face_trace(states: States, face: FaceCells, side: Face) -> FaceTrace:
         across = (speed * (field.moved[:, cells] @ along)).sum(axis=0) / (speed**2).sum(axis=0)
         hoop.append(_joined(stiff * (around + lattice.nu * across) @ to.T))
         transverse.append(_joined(stiff * (across + lattice.nu * around) @ to.T))
-    ends = lattice.position[1][cells] @ values
-    reach = _joined(ends @ to.T) if face.is_flat else np.zeros(1)
+    sides = lattice.position[1][cells][:, np.all(lattice.square.nodes == np.array([[end[0]], [0.0]]), axis=0)]
+    other = lattice.position[1][cells][:, np.all(lattice.square.nodes == np.array([[end[0]], [1.0]]), axis=0)]
+    reach = _joined(sides + (other - sides) * _ALONG) if face.is_flat else np.zeros(1)
     return FaceTrace(reach, np.array(hoop), np.array(transverse))
 
 
@@ -85,7 +87,7 @@ def section_map(states: States) -> SectionMap:
     degree, cells = lattice.square.degree, len(lattice.numbers)
     gauss, _ = unit_gauss(degree + 1)
     one = _carried(gauss, _WITHIN, degree - 1)
-    to = np.kron(one, one)
+    to: Array = np.kron(one, one).astype(np.float64)
     count = len(_WITHIN)
     inside = np.array([np.repeat(_WITHIN, count), np.tile(_WITHIN, count)])
     places = lattice.square.to_coefficients.T @ basis(degree, inside)[0]
