@@ -91,11 +91,16 @@ Chord = StraightChord | EllipticChord
 
 @dataclass(frozen=True)
 class Layer:
-    """A part of the depth, from ``inner`` to ``outer``, over which the width is smooth."""
+    """A part of the depth, from ``inner`` to ``outer``, over which the width is smooth.
+
+    ``void`` are chords of a hollow about the plane of bending; what ``chords`` add up to is the solid on both its
+    sides.
+    """
 
     inner: float
     outer: float
     chords: tuple[Chord, ...]
+    void: tuple[Chord, ...] = ()
 
     def width(self, x: Array) -> Array:
         """Width (length) at ``x``, which lies in this layer."""
@@ -103,6 +108,17 @@ class Layer:
         for chord in self.chords:
             total = total + chord.width(x)
         return np.maximum(total, 0.0)
+
+    def half_void(self, x: Array) -> Array:
+        """Distance (length) from the plane of bending to the solid; zero where there is no hollow."""
+        total = np.zeros_like(x)
+        for chord in self.void:
+            total = total + chord.width(x)
+        return 0.5 * total
+
+    def half_outline(self, x: Array) -> Array:
+        """Distance (length) from the plane of bending to the outline."""
+        return self.half_void(x) + 0.5 * self.width(x)
 
     @property
     def branch_points(self) -> tuple[float, ...]:
@@ -267,7 +283,8 @@ def _layer_rule(layer: Layer, outer: float, pole: float | None) -> tuple[Array, 
 def blend(first: Section, second: Section, share: float) -> Section:
     """The section a ``share`` (0 to 1) of the way along a taper from ``first`` to ``second``.
 
-    The depth goes linearly; the width is the mean, so weighted, of the two widths at the same share of depth.
+    The depth goes linearly; the width, and a hollow's, is the mean, so weighted, of the two widths at the same share
+    of depth.
     """
     if share <= 0.0 or first == second:
         return first
@@ -279,10 +296,12 @@ def blend(first: Section, second: Section, share: float) -> Section:
     for inner, outer in itertools.pairwise(cuts):
         middle = 0.5 * (inner + outer)
         chords: list[Chord] = []
+        void: list[Chord] = []
         for section, weight in ((first, 1.0 - share), (second, share)):
             owner = next(layer for layer in section.layers if middle * section.depth < layer.outer)
             chords += [chord.scaled(depth / section.depth, weight) for chord in owner.chords]
-        layers.append(Layer(inner * depth, outer * depth, tuple(chords)))
+            void += [chord.scaled(depth / section.depth, weight) for chord in owner.void]
+        layers.append(Layer(inner * depth, outer * depth, tuple(chords), tuple(void)))
     shape = first.shape if first.shape == second.shape else f"{first.shape} to {second.shape}"
     return Section(shape, tuple(layers))
 

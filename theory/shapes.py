@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import itertools
 from collections.abc import Sequence
+from dataclasses import replace
 from typing import Literal
 
 from intrados.theory.section import EllipticChord, Layer, Section, SectionError, StraightChord
@@ -46,7 +47,7 @@ def tube(diameter: float, bore: float) -> Section:
     wall = radius - hole
     layers = (
         Layer(0.0, wall, (solid,)),
-        Layer(wall, diameter - wall, (solid, EllipticChord(radius, hole, -hole))),
+        Layer(wall, diameter - wall, (solid, EllipticChord(radius, hole, -hole)), (EllipticChord(radius, hole, hole),)),
         Layer(diameter - wall, diameter, (solid,)),
     )
     return Section("tube", layers)
@@ -94,14 +95,15 @@ def box(depth: float, width: float, flange_thickness: float, web_thickness: floa
     if not 2.0 * web_thickness < width:
         raise SectionError("web_thickness", f"must be less than half the width {width:g}")
     webs = 2.0 * web_thickness
-    return _stack(
+    inner, middle, outer = _stack(
         "box",
         [
             (flange_thickness, width, width),
             (depth - 2.0 * flange_thickness, webs, webs),
             (flange_thickness, width, width),
         ],
-    )
+    ).layers
+    return Section("box", (inner, replace(middle, void=(StraightChord(width - webs, 0.0),)), outer))
 
 
 def polygon(points: Sequence[tuple[float, float]]) -> Section:
