@@ -2,11 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Sequence
+
 from intrados.compare.job import Job
+from intrados.compare.ladder import largest_term
 from intrados.compare.numeral import common_scale
 from intrados.compare.results import Along, Fibre, FibreName, Governing, Peak, StationResult
 from intrados.compare.units import Units
-from intrados.compare.verdict import is_compact, is_settled
 from intrados.theory.load import BodyLoad, EndLoad
 from intrados.theory.member import Arc, Member
 from intrados.theory.spread import BodySpread
@@ -20,33 +22,39 @@ _FAINT = 0.05
 _FIBRES: tuple[FibreName, FibreName] = ("inner", "outer")
 
 
-def notes(job: Job) -> tuple[str, ...]:
+def notes(job: Job, cases: Sequence[tuple[StationResult, ...]]) -> tuple[str, ...]:
     """What the reader must know before any number, most important first."""
-    return tuple(dict.fromkeys([*_about_sections(job), *_about_loads(job), *_about_joints(job), *_about_motion(job)]))
+    about = [_about_plane_stress(job, cases), *_about_loads(job), *_about_joints(job), *_about_motion(job)]
+    return tuple(dict.fromkeys(note for note in about if note))
 
 
-def _about_sections(job: Job) -> list[str]:
-    used = {section for piece in job.member.pieces for section in piece.sections}
-    named = {name: section for name, section in job.sections.items() if section in used}
-    unsettled = [f"{name} ({section.shape})" for name, section in named.items() if not is_settled(section)]
-    doubtful = [
-        f"{name} ({section.shape})"
-        for name, section in named.items()
-        if is_settled(section) and not is_compact(section)
-    ]
-    found = []
-    if unsettled:
-        found.append(
-            f"Plane stress alone does not settle section {', '.join(unsettled)}: flanges and walls bend out of "
-            "the plane, and the stress where they meet the web can be tens of percent higher than both the hand theory "
-            "and this FE say. No station there is given a 'holds'."
-        )
-    if doubtful:
-        found.append(
-            f"Plane stress alone does not settle section {', '.join(doubtful)}: its width varies or exceeds half its "
-            "depth, and the three-dimensional stress can differ from this FE by a few percent, more in a tight bend."
-        )
-    return found
+def _about_plane_stress(job: Job, cases: Sequence[tuple[StationResult, ...]]) -> str:
+    """Says so, with the worst fibre, where the plane-stress FE is itself farther off than the agreement band."""
+    worst: tuple[float, StationResult, FibreName] | None = None
+    for stations in cases:
+        for station in stations:
+            for name in _FIBRES:
+                fibre: Fibre = getattr(station, name)
+                if fibre.verdict in ("not comparable", "unloaded") or fibre.best == 0.0:
+                    continue
+                share = abs(fibre.budget.width) / abs(fibre.best)
+                is_large = abs(fibre.best) >= _FAINT * max(abs(station.inner.best), abs(station.outer.best))
+                if is_large and share > job.agreement.band and (worst is None or share > worst[0]):
+                    worst = (share, station, name)
+    if worst is None:
+        return ""
+    _, station, name = worst
+    fibre = getattr(station, name)
+    scale = common_scale([fibre.fe, fibre.best])
+    decimals = scale.decimals(fibre.fe, fibre.best)
+    where = {"over the web": "over the web", "edge": "at the edge", "between": "between middle and edge"}.get(
+        fibre.place or "", "at mid-width"
+    )
+    return (
+        f"The plane-stress FE is itself far off for this section: at {station.name}, {name} fibre, it says "
+        f"{scale.text(fibre.fe, decimals)}{scale.exponent} {job.units.stress} where the three-dimensional section has "
+        f"{scale.text(fibre.best, decimals)}{scale.exponent} {job.units.stress} {where}. Read 'best', which adds that."
+    )
 
 
 def _about_loads(job: Job) -> list[str]:
@@ -150,7 +158,7 @@ def _first_sentence(station: StationResult, name: FibreName, fibre: Fibre, job: 
     decimals = scale.decimals(fibre.hand, fibre.best)
     unit, power = job.units.stress, scale.exponent
     numbers = (
-        f"hand {scale.text(fibre.hand, decimals)}{power} {unit}, FE {scale.text(fibre.best, decimals)}{power} "
+        f"hand {scale.text(fibre.hand, decimals)}{power} {unit}, best {scale.text(fibre.best, decimals)}{power} "
         f"± {scale.bound(fibre.uncertainty, decimals)}{power} {unit}"
     )
     place = f"at the governing station {station.name}, {name} fibre ({numbers})"
@@ -158,17 +166,31 @@ def _first_sentence(station: StationResult, name: FibreName, fibre: Fibre, job: 
     off = 100.0 * abs(fibre.difference or 0.0)
     if fibre.verdict == "holds":
         return f"The hand theory holds {place}: it is within the band of {band}."
-    if fibre.verdict is None:
-        return (
-            f"The hand theory agrees with plane stress {place}, but plane stress does not settle this section: "
-            "do not sign off on it alone."
-        )
+    cause = _cause(station, name, fibre)
     if fibre.verdict == "low":
         return (
             f"Do not rely on the hand theory {place}: it is {off:.1f} % low, on the unsafe side, "
-            f"beyond the band of {band}."
+            f"beyond the band of {band}. {cause}"
         )
-    return f"The hand theory is {off:.1f} % high {place}, on the safe side but beyond the band of {band}."
+    return f"The hand theory is {off:.1f} % high {place}, on the safe side but beyond the band of {band}. {cause}"
+
+
+def _cause(station: StationResult, name: FibreName, fibre: Fibre) -> str:
+    """Which assumption costs most at a fibre, in plain words and percent of the best estimate."""
+    terms = fibre.budget
+    cause = largest_term(terms)
+    share = 100.0 * abs(getattr(terms, cause)) / abs(fibre.best)
+    if cause == "thick":
+        return f"The bend is too thick for its radius (R/h {station.curvature_ratio:.3g}): that alone is {share:.1f} %."
+    if cause == "width" and fibre.place == "over the web":
+        return (
+            f"The {name} flange bends out of the plane, so that its full width does not carry: that is {share:.1f} %."
+        )
+    if cause == "width":
+        return f"The section changes its shape across its width, which the theory leaves out: that is {share:.1f} %."
+    if station.zone == "joint":
+        return f"Curvature or section change close by: that is {share:.1f} %."
+    return f"The way the load enters still reaches here: that is {share:.1f} %."
 
 
 def _elsewhere(stations: tuple[StationResult, ...], governing_stress: float) -> str:
@@ -206,7 +228,7 @@ def _beyond_comparison(stations: tuple[StationResult, ...], fibre: Fibre, units:
 
 
 def _between_stations(highest: Peak | None, fibre: Fibre, units: Units) -> str:
-    if highest is None or abs(highest.stress) <= (1.0 + _NOTEWORTHY) * abs(fibre.best):
+    if highest is None or abs(highest.stress) <= (1.0 + _NOTEWORTHY) * abs(fibre.fe):
         return ""
     stress = common_scale([highest.stress]).quantity(highest.stress, units.stress)
     where = f"{highest.angle:.4g} deg" if highest.angle is not None else f"{highest.distance:.4g} {units.length}"

@@ -25,7 +25,7 @@ def hand_rows(job: Job, case: int) -> tuple[HandRow, ...]:
         R = member.radius(station.piece, station.share)
         N, V, M = loading.resultants(station.piece, station.share)
         ring = None if R is None else section.ring(R)
-        inner, outer = winkler.fibres(section, R, N, M)
+        inner, outer = job.hand.fibres(section, R, N, M)
         inner_straight, outer_straight = winkler.fibres(section, None, N, M)
         rows.append(
             HandRow(

@@ -16,6 +16,7 @@ from intrados.compare.reader import Reader
 from intrados.compare.sections import read_sections
 from intrados.compare.toml_lines import Path
 from intrados.compare.units import UNIT_SETS, Units
+from intrados.theory.hand import HandTheory
 from intrados.theory.load import Load, LoadError
 from intrados.theory.member import Arc, Member, Piece, Straight
 from intrados.theory.outline import faults
@@ -23,7 +24,7 @@ from intrados.theory.section import Section
 from intrados.theory.statics import Loading, Support, loading
 from intrados.theory.station import Station, default_stations, named_station, with_named
 
-_TABLES = ("title", "units", "material", "section", "member", "ends", "load", "case", "stations", "agreement")
+_TABLES = ("title", "units", "material", "section", "member", "ends", "load", "case", "stations", "agreement", "theory")
 _MOST_STATIONS = 500
 
 
@@ -50,6 +51,7 @@ class Job:
     loadings: tuple[Loading, ...]
     stations: tuple[Station, ...]
     agreement: schema.Agreement
+    hand: HandTheory
     sha256: str
 
 
@@ -103,6 +105,7 @@ def _read(reader: Reader, data: Mapping[str, object], sha256: str) -> Job | None
         unit_set = "mm-N-MPa"
     material = reader.table(schema.Material, _required(reader, data, "material"), ("material",))
     agreement = reader.table(schema.Agreement, data.get("agreement", {}), ("agreement",))
+    theory = reader.table(schema.Theory, data.get("theory", {}), ("theory",))
     sections = read_sections(reader, _required(reader, data, "section"))
     member = _read_member(reader, _required(reader, data, "member"), sections)
     ends = _read_ends(reader, _required(reader, data, "ends"))
@@ -112,7 +115,7 @@ def _read(reader: Reader, data: Mapping[str, object], sha256: str) -> Job | None
     if member is None or ends is None or loads is None or cases is None:
         return None
     loadings = _loadings(reader, member, ends, loads, cases)
-    if reader.mistakes or material is None or agreement is None:
+    if reader.mistakes or material is None or agreement is None or theory is None:
         return None
     sound = {name: section for name, section in sections.items() if section is not None}
     given = tuple(load for _, load in loads)
@@ -128,6 +131,7 @@ def _read(reader: Reader, data: Mapping[str, object], sha256: str) -> Job | None
         loadings,
         stations,
         agreement,
+        HandTheory(theory.flanges, material.nu),
         sha256,
     )
 

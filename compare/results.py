@@ -13,7 +13,7 @@ from typing import Literal
 from intrados.compare.units import Units
 
 Verdict = Literal["holds", "low", "high", "unloaded", "not comparable"]
-Zone = Literal["theory", "introduction", "support"]
+Zone = Literal["theory", "thick", "width", "introduction", "joint", "support"]
 FibreName = Literal["inner", "outer"]
 End = Literal["clamped", "free"]
 Numbers = tuple[float, ...]
@@ -30,21 +30,59 @@ class Resultants:
 
 
 @dataclass(frozen=True)
-class Fibre:
-    """Hoop stress at one face of a station: hand theory, straight-beam formula, FE, and the comparison.
+class Budget:
+    """What each assumption of the hand theory costs (stress); the terms add up to best - hand.
 
-    ``uncertainty`` is absolute (stress). ``difference`` is (hand - best)/ref of the design; ``verdict`` is
-    None where the theory is within the band but plane stress cannot settle the section.
+    ``thick``: ideal plane-stress bar less hand theory. ``width``: exact three-dimensional bar less ideal bar.
+    ``introduction``: plane-stress FE of the whole member less ideal bar.
+    """
+
+    thick: float
+    width: float
+    introduction: float
+
+
+@dataclass(frozen=True)
+class Fibre:
+    """Hoop stress at one face of a station: hand theory, straight-beam formula, ideal bar, FE, and the comparison.
+
+    ``best`` = fe + budget.width; ``uncertainty`` is absolute (stress) and belongs to it. ``difference`` is
+    (hand - best)/ref of the design. ``place`` says where over the face's width the three-dimensional bar has
+    its largest hoop stress (None on a straight). ``von_mises`` is that of best with the stress across the face.
     """
 
     hand: float
     straight: float
+    ideal: float
     fe: float
     uncertainty: float
     best: float
     difference: float | None
-    verdict: Verdict | None
+    verdict: Verdict
     von_mises: float
+    place: str | None
+    budget: Budget
+
+
+@dataclass(frozen=True)
+class Radial:
+    """The radial stress of largest magnitude over the depth, > 0 tension: hand, ideal, FE; ``depth``: where FE has it.
+
+    ``depth`` is measured from the inner face (length).
+    """
+
+    hand: float
+    ideal: float
+    fe: float
+    depth: float
+
+
+@dataclass(frozen=True)
+class Transverse:
+    """Stress across the inner and outer face where its hoop stress is largest, from the three-dimensional bar."""
+
+    inner: float
+    outer: float
 
 
 @dataclass(frozen=True)
@@ -53,6 +91,7 @@ class Profile:
 
     y: Numbers
     hand: Numbers
+    ideal: Numbers
     fe: Numbers
 
 
@@ -81,6 +120,8 @@ class StationResult:
     outer: Fibre
     zone: Zone | None
     distance_to_load: float | None
+    radial: Radial | None
+    transverse: Transverse | None
     utilisation: float | None
     profile: Profile
 
@@ -95,7 +136,7 @@ class Governing:
     best: float
     uncertainty: float
     difference: float | None
-    verdict: Verdict | None
+    verdict: Verdict
     why: str
     utilisation: float | None
 

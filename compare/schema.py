@@ -266,6 +266,12 @@ class NamedStation(At):
     name: Name
 
 
+class Theory(Table):
+    """[theory]"""
+
+    flanges: Literal["full", "effective"] = "full"
+
+
 class Agreement(Table):
     """[agreement]"""
 

@@ -40,25 +40,29 @@ def _cut_functions(membrane: Membrane, last: bool) -> Numbers:
     return np.array([*line, *(count + index for index in line)], dtype=np.int64)
 
 
-def hoop_profile(membrane: Membrane, displacement: Array, columns: tuple[int, ...], line: int, eta: Array) -> Array:
-    """Hoop stress (n) at shares ``eta`` of the depth on a line: the mean of what the columns beside it say."""
-    sides = [_hoop_in(membrane, displacement, column, line - column, eta) for column in columns]
+def stress_profile(membrane: Membrane, displacement: Array, columns: tuple[int, ...], line: int, eta: Array) -> Array:
+    """Hoop and radial stress, shape (2, n), at shares ``eta`` of the depth on a line.
+
+    The mean of what the columns beside it say. Radial: normal to the datum line.
+    """
+    sides = [_profile_in(membrane, displacement, column, line - column, eta) for column in columns]
     mean: Array = np.mean(sides, axis=0)
     return mean
 
 
-def _hoop_in(membrane: Membrane, displacement: Array, column: int, end: int, eta: Array) -> Array:
+def _profile_in(membrane: Membrane, displacement: Array, column: int, end: int, eta: Array) -> Array:
     strip = membrane.strip
     piece = strip.columns[column].piece
     share = strip.columns[column].share(np.array([float(end)]))
-    tangent = strip.member.tangent(piece, share)[:, 0]
-    result = np.empty_like(eta)
+    tangent, inward = strip.member.tangent(piece, share)[:, 0], strip.member.inward(piece, share)[:, 0]
+    result = np.empty((2, len(eta)))
     for index, row in enumerate(strip.rows):
         low, high = row.eta(np.array([0.0, 1.0]))
         inside = (eta >= low - 1e-12) & (eta <= high + 1e-12)
         points = across_cut(float(end), local_q(row.coefficients, eta[inside]))
         element = np.array([column * membrane.rows + index])
-        result[inside] = along(tangent, stresses(membrane, displacement, element, points)[:, 0])
+        tensor = stresses(membrane, displacement, element, points)[:, 0]
+        result[:, inside] = along(tangent, tensor), along(inward, tensor)
     return result
 
 

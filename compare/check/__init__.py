@@ -42,6 +42,7 @@ def check(job: Job) -> Checked:
         job.agreement.numerical,
     )
     cases = [SolvedCase(job, solved.pair, index, places[index]) for index in range(len(job.loadings))]
+    read_out = tuple(_result(case) for case in cases)
     membrane = solved.pair.fine.membrane
     levels = tuple(Level(level.degree, level.cells, level.unknowns, level.worst) for level in solved.levels)
     results = Results(
@@ -54,14 +55,14 @@ def check(job: Job) -> Checked:
         numerical=job.agreement.numerical,
         yield_stress=job.material.yield_stress,
         ends=(job.loadings[0].start, job.loadings[0].end),
-        notes=notes(job),
+        notes=notes(job, [case.stations for case in read_out]),
         sections={
             name: SectionSummary(section.area, section.centroid, section.inertia, section.depth)
             for name, section in job.sections.items()
         },
         mesh=MeshSummary(len(membrane.scalars), membrane.unknowns, levels),
         missed=tuple(name for case in cases for name in case.missed()),
-        cases=tuple(_result(case) for case in cases),
+        cases=read_out,
     )
     return Checked(results, solved)
 

@@ -8,6 +8,7 @@ from functools import cached_property
 import numpy as np
 
 from intrados.compare.job import Job
+from intrados.compare.ladder import Rungs, rungs
 from intrados.compare.zone import Place
 from intrados.fem.accuracy import FACES, FAINT, CaseSolution, Pair
 from intrados.fem.membrane import Membrane
@@ -52,17 +53,36 @@ class SolvedCase:
         )
 
     @cached_property
+    def rungs(self) -> tuple[tuple[Rungs, Rungs], ...]:
+        """What the section alone says of both fibres of each station under its N and M."""
+        member, nu = self.loading.member, self.job.material.nu
+        found = []
+        for station in self.job.stations:
+            N, _, M = self.loading.resultants(station.piece, station.share)
+            section, R = member.section(station.piece, station.share), member.radius(station.piece, station.share)
+            found.append(rungs(section, R, nu, N, M))
+        return tuple(found)
+
+    @cached_property
+    def best(self) -> Array:
+        """Best estimate of the fibre stress at the stations, (stations, 2): FE and what the third dimension adds."""
+        best: Array = self.fibres + np.array([[of.width for of in pair] for pair in self.rungs])
+        return best
+
+    @cached_property
     def scales(self) -> Array:
-        """The larger |fibre stress| of each station."""
-        larger: Array = np.abs(self.fibres).max(axis=1)
+        """The larger |best| of each station."""
+        larger: Array = np.abs(self.best).max(axis=1)
         return larger
 
     def missed(self) -> list[str]:
         """Names of the comparable stations whose uncertainty is beyond the numerical target."""
         found = []
-        for station, where, scale in zip(self.job.stations, self.places, self.scales, strict=True):
+        for station, where, scale, steps in zip(self.job.stations, self.places, self.scales, self.rungs, strict=True):
             allowed = self.job.agreement.numerical * max(scale, FAINT * self.scales.max())
-            worst = max(self.pair.at(self.index, face, station) for face in FACES)
+            worst = max(
+                self.pair.at(self.index, face, station) + of.uncertainty for face, of in zip(FACES, steps, strict=True)
+            )
             if where.comparable and worst > allowed:
                 found.append(f"{station.name} ({self.name})" if self.name else station.name)
         return found

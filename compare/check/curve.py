@@ -8,7 +8,6 @@ from intrados.compare.check.case import SolvedCase
 from intrados.compare.results import Along, FibreCurve
 from intrados.compare.zone import place
 from intrados.fem.accuracy import FACES
-from intrados.theory import winkler
 
 _SAMPLES = np.linspace(0.0, 1.0, 5)
 
@@ -27,7 +26,7 @@ def along_member(case: SolvedCase) -> Along:
     hand = np.empty((len(places), len(FACES)))
     for index, (piece, share) in enumerate(zip(pieces, shares, strict=True)):
         N, _, M = case.loading.resultants(piece, share)
-        hand[index] = winkler.fibres(member.section(piece, share), member.radius(piece, share), N, M)
+        hand[index] = case.job.hand.fibres(member.section(piece, share), member.radius(piece, share), N, M)
     curves = []
     for index, face in enumerate(FACES):
         fe = case.solution.face(face).sampled(_SAMPLES)

@@ -1,4 +1,4 @@
-"""One station: statics, hand theory and FE side by side, with the comparison of both fibres."""
+"""One station: statics, hand theory and FE side by side, the budget between them, and the comparison of both fibres."""
 
 from __future__ import annotations
 
@@ -8,14 +8,17 @@ import numpy as np
 
 from intrados.compare import verdict
 from intrados.compare.check.case import SolvedCase
-from intrados.compare.results import Fibre, Profile, Resultants, StationResult, Zone
+from intrados.compare.ladder import Rungs, budget, largest_term
+from intrados.compare.results import Fibre, Profile, Radial, Resultants, StationResult, Transverse, Zone
 from intrados.compare.zone import Place
 from intrados.fem.accuracy import FACES
-from intrados.fem.cut import forces_beyond, hoop_profile
+from intrados.fem.cut import forces_beyond, stress_profile
 from intrados.fem.fibre import pressed
 from intrados.theory import winkler
+from intrados.theory.ideal import bar
 from intrados.theory.load import Face
 from intrados.theory.member import Arc
+from intrados.theory.quadrature import Array
 
 _PROFILE_POINTS = 41
 
@@ -27,14 +30,16 @@ def station_result(case: SolvedCase, number: int) -> StationResult:
     section, R = member.section(piece, share), member.radius(piece, share)
     ring = None if R is None else section.ring(R)
     N, V, M = case.loading.resultants(piece, share)
-    hand, straight = winkler.fibres(section, R, N, M), winkler.fibres(section, None, N, M)
-    inner, outer = (_fibre(case, number, face, hand[i], straight[i]) for i, face in enumerate(FACES))
+    hand, straight = case.job.hand.fibres(section, R, N, M), winkler.fibres(section, None, N, M)
+    steps = case.rungs[number]
+    inner, outer = (_fibre(case, number, i, hand[i], straight[i], steps[i]) for i in range(len(FACES)))
     line = case.membrane.strip.line_at(piece, share)
     beyond = forces_beyond(case.membrane, case.solution.displacement, case.solution.forces, line)
     x, y = member.centroid_point(piece, share)
     is_arc = isinstance(member.pieces[piece], Arc)
     position = share * member.extent(piece)
     yield_stress = case.job.material.yield_stress
+    profile, radial = _profiles(case, number, N, M)
     return StationResult(
         name=station.name,
         piece=piece + 1,
@@ -57,51 +62,71 @@ def station_result(case: SolvedCase, number: int) -> StationResult:
         outer=outer,
         zone=_zone(where, inner, outer),
         distance_to_load=where.distance_to_load,
+        radial=radial,
+        transverse=_transverse(steps),
         utilisation=max(inner.von_mises, outer.von_mises) / yield_stress if yield_stress else None,
-        profile=_profile(case, number, N, M),
+        profile=profile,
     )
 
 
 def _zone(where: Place, inner: Fibre, outer: Fibre) -> Zone | None:
-    """Why a station is not compared, or that the theory holds; None where it is left and the cause is not known."""
+    """Why a station is not compared, that the theory holds, or what the difference is mostly made of."""
     if where.in_load:
         return "introduction"
     if where.near_clamp:
         return "support"
-    return "theory" if inner.verdict == outer.verdict == "holds" else None
+    if {inner.verdict, outer.verdict} <= {"holds", "unloaded"}:
+        return "theory"
+    worse = max(inner, outer, key=lambda fibre: abs(fibre.difference or 0.0))
+    cause: Zone = largest_term(worse.budget)
+    return "joint" if cause == "introduction" and where.at_joint else cause
 
 
-def _fibre(case: SolvedCase, number: int, face: Face, hand: float, straight: float) -> Fibre:
-    station = case.job.stations[number]
-    section = case.loading.member.section(station.piece, station.share)
-    fe = float(case.fibres[number, FACES.index(face)])
-    uncertainty = case.pair.at(case.index, face, station)
+def _fibre(case: SolvedCase, number: int, side: int, hand: float, straight: float, steps: Rungs) -> Fibre:
+    station, face = case.job.stations[number], FACES[side]
+    fe, best = float(case.fibres[number, side]), float(case.best[number, side])
+    uncertainty = case.pair.at(case.index, face, station) + steps.uncertainty
     scale = verdict.Scale(float(case.scales[number]), float(case.scales.max()), case.job.agreement.band)
-    compared = verdict.compare(
-        hand, fe, uncertainty, scale, case.places[number].comparable, verdict.is_settled(section)
-    )
-    pressure, shear = pressed(case.loading, station.piece, face, np.array([station.share]))
-    normal, tau = float(pressure[0]), float(shear[0])
+    compared = verdict.compare(hand, best, uncertainty, scale, case.places[number].comparable)
     return Fibre(
         hand=hand,
         straight=straight,
+        ideal=steps.ideal,
         fe=fe,
         uncertainty=uncertainty,
-        best=fe,
+        best=best,
         difference=compared.difference,
         verdict=compared.verdict,
-        von_mises=math.sqrt(fe * fe - fe * normal + normal * normal + 3.0 * tau * tau),
+        von_mises=_von_mises(case, number, face, best, steps),
+        place=None if steps.three_d is None else steps.three_d.place,
+        budget=budget(hand, fe, steps),
     )
 
 
-def _profile(case: SolvedCase, number: int, N: float, M: float) -> Profile:
+def _von_mises(case: SolvedCase, number: int, face: Face, hoop: float, steps: Rungs) -> float:
+    """Of the hoop stress, what loads put on the face, and the stress across it that the section's shape brings."""
+    station = case.job.stations[number]
+    pressure, shear = pressed(case.loading, station.piece, face, np.array([station.share]))
+    normal, tau = float(pressure[0]), float(shear[0])
+    across = 0.0 if steps.three_d is None else steps.three_d.transverse
+    square = (hoop - normal) ** 2 + (normal - across) ** 2 + (across - hoop) ** 2
+    return math.sqrt(0.5 * square + 3.0 * tau * tau)
+
+
+def _transverse(steps: tuple[Rungs, Rungs]) -> Transverse | None:
+    inner, outer = (of.three_d for of in steps)
+    return None if inner is None or outer is None else Transverse(inner.transverse, outer.transverse)
+
+
+def _profiles(case: SolvedCase, number: int, N: float, M: float) -> tuple[Profile, Radial | None]:
+    """Hoop stress over the depth, and the largest radial stress, which a straight has none of by theory."""
     station = case.job.stations[number]
     strip, member = case.membrane.strip, case.loading.member
     section, R = member.section(station.piece, station.share), member.radius(station.piece, station.share)
     shares = np.linspace(0.0, 1.0, _PROFILE_POINTS)
     x = shares * section.depth
     line = strip.line_at(station.piece, station.share)
-    fe = hoop_profile(
+    fe, across = stress_profile(
         case.membrane,
         case.solution.displacement,
         strip.columns_beside(line, station.piece),
@@ -110,5 +135,25 @@ def _profile(case: SolvedCase, number: int, N: float, M: float) -> Profile:
     )
     # The stretch of a face gives a better value there than the stress tensor.
     fe[0], fe[-1] = case.fibres[number]
-    hand = winkler.hoop(section, R, N, M, x)
-    return Profile(tuple((section.centroid - x).tolist()), tuple(hand.tolist()), tuple(fe.tolist()))
+    exact = bar(section, R, case.job.material.nu)
+    hand = case.job.hand.hoop(section, R, N, M, x)
+    profile = Profile(
+        y=tuple((section.centroid - x).tolist()),
+        hand=tuple(hand.tolist()),
+        ideal=tuple(exact.hoop(N, M, x).tolist()),
+        fe=tuple(fe.tolist()),
+    )
+    if R is None:
+        return profile, None
+    radial = Radial(
+        hand=_largest(winkler.radial(section, R, N, M, x)),
+        ideal=_largest(exact.radial(N, M, x)),
+        fe=_largest(across),
+        depth=float(x[np.abs(across).argmax()]),
+    )
+    return profile, radial
+
+
+def _largest(values: Array) -> float:
+    """The value of largest magnitude."""
+    return float(values[np.abs(values).argmax()])
