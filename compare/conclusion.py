@@ -19,6 +19,8 @@ _TIE = 1e-9
 _NOTEWORTHY = 0.02
 # Stations that carry less than this share of the governing stress are counted apart.
 _FAINT = 0.05
+# A fibre with less than this share of it is not worth naming as the one that is farthest off.
+_WORTH = 0.5
 _FIBRES: tuple[FibreName, FibreName] = ("inner", "outer")
 
 
@@ -136,6 +138,7 @@ def governing(stations: tuple[StationResult, ...], highest: Peak | None, job: Jo
     station, name, fibre = chosen
     sentences = [
         _first_sentence(station, name, fibre, job),
+        _farthest_off(stations, station, name, fibre.best),
         _elsewhere(stations, fibre.best),
         _beyond_comparison(stations, fibre, job.units),
         _between_stations(highest, fibre, job.units),
@@ -191,6 +194,26 @@ def _cause(station: StationResult, name: FibreName, fibre: Fibre) -> str:
     if station.zone == "joint":
         return f"Curvature or section change close by: that is {share:.1f} %."
     return f"The way the load enters still reaches here: that is {share:.1f} %."
+
+
+def _farthest_off(
+    stations: tuple[StationResult, ...], decisive: StationResult, decisive_name: FibreName, governing_stress: float
+) -> str:
+    """Names the loaded fibre on which the theory is lowest, where that is not the governing one."""
+    low = [
+        (abs(getattr(station, name).difference or 0.0), station, name)
+        for station in stations
+        for name in _FIBRES
+        if getattr(station, name).verdict == "low"
+        and abs(getattr(station, name).best) >= _WORTH * abs(governing_stress)
+    ]
+    if not low:
+        return ""
+    off, station, name = max(low, key=lambda item: item[0])
+    if (station.name, name) == (decisive.name, decisive_name):
+        return ""
+    cause = _cause(station, name, getattr(station, name))
+    return f"It is farthest off at {station.name}, {name} fibre: {100.0 * off:.1f} % low. {cause}"
 
 
 def _elsewhere(stations: tuple[StationResult, ...], governing_stress: float) -> str:

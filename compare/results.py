@@ -208,6 +208,23 @@ class Field:
 
 
 @dataclass(frozen=True)
+class SectionField:
+    """Hoop stress over half the section (z >= 0) of the governing station, from the three-dimensional bar.
+
+    ``x`` from the inner face, ``z`` from the plane of bending (length); ``triangles`` index them. ``plane_x`` and
+    ``plane_hoop``: what plane stress of the same bar has at a depth, over the whole width.
+    """
+
+    station: str
+    x: Numbers
+    z: Numbers
+    triangles: tuple[tuple[int, int, int], ...]
+    hoop: Numbers
+    plane_x: Numbers
+    plane_hoop: Numbers
+
+
+@dataclass(frozen=True)
 class LoadMark:
     """A load as the drawing shows it: where its resultant acts, and the part of the member it enters over.
 
@@ -244,6 +261,7 @@ class CaseResult:
     loads: tuple[LoadMark, ...]
     along: Along
     field: Field
+    section_field: SectionField | None
 
 
 @dataclass(frozen=True)

@@ -35,8 +35,11 @@ def _header(units: Units) -> list[str]:
     columns += [f"FE N [{force}]", f"FE V [{force}]", f"FE M [{moment}]"]
     columns += [f"area [{length}^2]", f"rn [{length}]", f"e [{length}]"]
     for face in ("inner", "outer"):
-        columns += [f"{face} {name} [{stress}]" for name in ("hand", "straight", "FE", "uncertainty", "best")]
+        columns += [f"{face} {name} [{stress}]" for name in ("hand", "straight", "ideal", "FE", "uncertainty", "best")]
+        columns += [f"{face} {name} [{stress}]" for name in ("thick", "width", "introduction")]
         columns += [f"{face} difference [-]", f"{face} verdict", f"{face} von Mises [{stress}]"]
+    columns += [f"radial {name} [{stress}]" for name in ("hand", "ideal", "FE")]
+    columns += [f"{face} transverse [{stress}]" for face in ("inner", "outer")]
     return [*columns, "zone", "distance to load [depths]", "utilisation [-]"]
 
 
@@ -47,12 +50,19 @@ def _row(case: CaseResult, station: StationResult) -> list[Cell]:
     section = [station.area, station.rn, station.e]
     last: list[Cell] = [station.zone, station.distance_to_load, station.utilisation]
     fibres = [*_fibre(station.inner), *_fibre(station.outer)]
-    return [case.name, *place, *shape, *forces, *section, *fibres, *last]
+    radial: list[Cell] = [None] * 3
+    if station.radial is not None:
+        radial = [station.radial.hand, station.radial.ideal, station.radial.fe]
+    across: list[Cell] = [None] * 2
+    if station.transverse is not None:
+        across = [station.transverse.inner, station.transverse.outer]
+    return [case.name, *place, *shape, *forces, *section, *fibres, *radial, *across, *last]
 
 
 def _fibre(fibre: Fibre) -> list[Cell]:
-    stresses = [fibre.hand, fibre.straight, fibre.fe, fibre.uncertainty, fibre.best]
-    return [*stresses, fibre.difference, fibre.verdict, fibre.von_mises]
+    stresses = [fibre.hand, fibre.straight, fibre.ideal, fibre.fe, fibre.uncertainty, fibre.best]
+    terms = [fibre.budget.thick, fibre.budget.width, fibre.budget.introduction]
+    return [*stresses, *terms, fibre.difference, fibre.verdict, fibre.von_mises]
 
 
 def _text(cell: Cell) -> str:

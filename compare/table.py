@@ -19,7 +19,12 @@ from intrados.compare.units import Units
 WIDTH = 100
 # A rule of ASCII hyphens under the header and no other line: the same on every terminal and in every pipe.
 _RULED = Box("    \n    \n -- \n    \n    \n    \n    \n    \n", ascii=True)
-_STYLES = {"holds": "green", "low": "bold red", "high": "bold yellow", None: "bold yellow"}
+_BUDGET_LEGEND = (
+    "thick: ideal plane-stress bar less hand theory; width: three-dimensional section less ideal bar; introd.: FE less "
+    "ideal bar (loads, joints, tapers); radial: largest over the depth, ideal bar; across: stress across the face, "
+    "three-dimensional; width at: where over the face's width the hoop stress is largest."
+)
+_STYLES = {"holds": "green", "low": "bold red", "high": "bold yellow"}
 
 
 @dataclass(frozen=True)
@@ -183,11 +188,18 @@ def _case(results: Results, case: CaseResult) -> list[RenderableType]:
     name = f"Stations, case {case.name}" if case.name else "Stations"
     legend = (
         "R: centroid radius (none on a straight); h: depth; d: distance to the nearest load; "
-        "U: uncertainty of FE, rounded up; diff: (hand - FE) over |FE|, "
+        "best: FE plus what the third dimension adds; U: its uncertainty, rounded up; diff: (hand - best) over |best|, "
         f"or over a tenth of the station's larger stress; holds: within {100 * results.band:g} % plus U. "
+        "Zone: the theory holds, or what the difference is mostly made of. "
         "N > 0 tension, M > 0 straightens; stress > 0 tension."
     )
     parts: list[RenderableType] = [_heading(name), _stations(results.units, case), Text(legend, style="dim")]
+    parts += [
+        Text(),
+        _heading("Difference budget: hand + thick + width + introduction = best"),
+        _budgets(results.units, case),
+    ]
+    parts += [Text(_BUDGET_LEGEND, style="dim")]
     if case.peak is not None:
         parts += [Text(), *_items([_peak(results.units, case.peak)])]
     if case.displacements:
@@ -200,7 +212,7 @@ def _stations(units: Units, case: CaseResult) -> Table:
     force = common_scale(value for station in stations for value in (station.N, station.V))
     moment = common_scale(station.M for station in stations)
     stress = common_scale(
-        value for station in stations for f in (station.inner, station.outer) for value in (f.hand, f.fe)
+        value for station in stations for f in (station.inner, station.outer) for value in (f.hand, f.best)
     )
     unit = stress.unit(units.stress)
     table = _table(
@@ -210,7 +222,7 @@ def _stations(units: Units, case: CaseResult) -> Table:
         f"M\n[{moment.unit(_moment(units))}]",
         "fibre",
         f"hand\n[{unit}]",
-        f"FE\n[{unit}]",
+        f"best\n[{unit}]",
         f"±U\n[{unit}]",
         "diff\n[%]",
         "verdict",
@@ -233,18 +245,56 @@ def _stations(units: Units, case: CaseResult) -> Table:
 
 
 def _fibre(stress: Scale, fibre: Fibre) -> tuple[str, str, str, str]:
-    """Hand, FE, uncertainty and difference; the first three with the same decimals."""
-    decimals = stress.decimals(fibre.hand, fibre.fe)
+    """Hand, best, uncertainty and difference; the first three with the same decimals."""
+    decimals = stress.decimals(fibre.hand, fibre.best)
     return (
         stress.text(fibre.hand, decimals),
-        stress.text(fibre.fe, decimals),
+        stress.text(fibre.best, decimals),
         stress.bound(fibre.uncertainty, decimals),
         percent(fibre.difference),
     )
 
 
+def _budgets(units: Units, case: CaseResult) -> Table:
+    """The terms from the hand value to the best estimate, with radial and transverse stress; both fibres a station."""
+    stations = case.stations
+    fibres = [fibre for station in stations for fibre in (station.inner, station.outer)]
+    stress = common_scale(value for fibre in fibres for value in (fibre.hand, fibre.fe, fibre.best))
+    unit = stress.unit(units.stress)
+    heads = ("hand", "thick", "width", "introd.", "best", "FE", "radial", "across")
+    table = _table("station", "fibre", *(f"{head}\n[{unit}]" for head in heads), "width\nat")
+    for station in stations:
+        pair = (station.inner, station.outer)
+        decimals = max(stress.decimals(max(abs(fibre.best), abs(fibre.hand))) for fibre in pair)
+        columns = [
+            [
+                stress.text(value, decimals)
+                for value in (
+                    fibre.hand,
+                    fibre.budget.thick,
+                    fibre.budget.width,
+                    fibre.budget.introduction,
+                    fibre.best,
+                    fibre.fe,
+                )
+            ]
+            for fibre in pair
+        ]
+        radial = "-" if station.radial is None else stress.text(station.radial.ideal, decimals)
+        across = station.transverse
+        table.add_row(
+            Text(station.name),
+            "inner\nouter",
+            *("\n".join(column) for column in zip(*columns, strict=True)),
+            radial,
+            "-" if across is None else f"{stress.text(across.inner, decimals)}\n{stress.text(across.outer, decimals)}",
+            "\n".join(fibre.place or "-" for fibre in pair),
+        )
+    return table
+
+
 def _verdict(fibre: Fibre) -> Text:
-    return Text(fibre.verdict or "not settled", style=_STYLES.get(fibre.verdict, "dim"))
+    return Text(fibre.verdict, style=_STYLES.get(fibre.verdict, "dim"))
 
 
 def _peak(units: Units, peak: Peak) -> str:

@@ -12,6 +12,7 @@ from intrados.compare.check.curve import along_member
 from intrados.compare.check.field import hoop_field
 from intrados.compare.check.mark import load_marks
 from intrados.compare.check.movement import displacements
+from intrados.compare.check.section_field import section_field
 from intrados.compare.check.station import station_result
 from intrados.compare.conclusion import governing, notes, peak
 from intrados.compare.job import Job
@@ -72,9 +73,10 @@ def _result(case: SolvedCase) -> CaseResult:
     curves = along_member(case)
     highest = peak(curves, case.loading.member)
     force_residual, moment_residual = _residuals(stations)
+    decisive = governing(stations, highest, case.job)
     return CaseResult(
         name=case.name,
-        governing=governing(stations, highest, case.job),
+        governing=decisive,
         peak=highest,
         stations=stations,
         displacements=displacements(case),
@@ -83,6 +85,7 @@ def _result(case: SolvedCase) -> CaseResult:
         loads=load_marks(case.loading),
         along=curves,
         field=hoop_field(case),
+        section_field=section_field(case, decisive),
     )
 
 
