@@ -55,6 +55,9 @@ def _parser() -> argparse.ArgumentParser:
     check.set_defaults(run=_check)
     hand = commands.add_parser("hand", help="hand theory only, printed; no mesh")
     hand.add_argument("job", metavar="JOB", help="a job file, or demo:NAME")
+    hand.add_argument(
+        "--ladder", action="store_true", help="also what thickness and section alone cost, without a mesh of the member"
+    )
     hand.set_defaults(run=_hand)
     demo = commands.add_parser("demo", help="list the demo jobs, or write one to the current folder")
     demo.add_argument("name", metavar="NAME", nargs="?", help="the demo to write")
@@ -134,13 +137,16 @@ def _print_check(results: Results, folder: Path, as_json: bool) -> None:
 
 
 def _hand(options: argparse.Namespace) -> int:
-    from intrados.compare.hand import hand_rows
-    from intrados.compare.table import hand_table, show
+    from intrados.compare.hand import hand_rows, ladder_rows
+    from intrados.compare.table import hand_table, ladder_table, show
 
     job = _read(options.job)
     for index, case in enumerate(job.cases):
         title = f"{job.title}, case {case.name}" if len(job.cases) > 1 else job.title
-        show(hand_table(title, job.units, hand_rows(job, index)), sys.stdout)
+        if options.ladder:
+            show(ladder_table(title, job.units, ladder_rows(job, index), job.agreement.band), sys.stdout)
+        else:
+            show(hand_table(title, job.units, hand_rows(job, index)), sys.stdout)
     return RAN
 
 

@@ -7,7 +7,7 @@ from functools import lru_cache
 import numpy as np
 
 from intrados.compare.job import Job
-from intrados.compare.table import HandRow
+from intrados.compare.table import HandRow, LadderRow
 from intrados.theory import winkler
 from intrados.theory.quadrature import Array
 from intrados.theory.section import Section
@@ -47,6 +47,33 @@ def hand_rows(job: Job, case: int) -> tuple[HandRow, ...]:
             )
         )
     return tuple(rows)
+
+
+def ladder_rows(job: Job, case: int) -> tuple[LadderRow, ...]:
+    """What hand theory says at every station and what the section alone adds to it, without a mesh of the member."""
+    from intrados.compare.ladder import FACES, rungs
+    from intrados.compare.verdict import Scale, compare
+
+    loading = job.loadings[case]
+    member = loading.member
+    found: list[LadderRow] = []
+    places = []
+    for station in job.stations:
+        section, R = member.section(station.piece, station.share), member.radius(station.piece, station.share)
+        N, _, M = loading.resultants(station.piece, station.share)
+        places.append(
+            (station, section, R, job.hand.fibres(section, R, N, M), rungs(section, R, job.material.nu, N, M))
+        )
+    scales = [max(abs(of.ideal + of.width) for of in steps) for *_, steps in places]
+    for (station, section, R, hand, steps), scale in zip(places, scales, strict=True):
+        for face, value, of in zip(FACES, hand, steps, strict=True):
+            measure = Scale(scale, max(scales), job.agreement.band)
+            compared = compare(value, of.ideal + of.width, of.uncertainty, measure, comparable=True)
+            ratio = None if R is None else R / section.depth
+            thick = of.ideal - value
+            row = (station.name, ratio, face, value, thick, of.width, of.uncertainty, compared.difference)
+            found.append(LadderRow(*row, None if of.three_d is None else of.three_d.place))
+    return tuple(found)
 
 
 def _largest_radial(section: Section, R: float, N: float, M: float) -> float:

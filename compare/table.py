@@ -19,6 +19,11 @@ from intrados.compare.units import Units
 WIDTH = 100
 # A rule of ASCII hyphens under the header and no other line: the same on every terminal and in every pipe.
 _RULED = Box("    \n    \n -- \n    \n    \n    \n    \n    \n", ascii=True)
+_LADDER_LEGEND = (
+    "thick: ideal plane-stress bar less hand theory; width: three-dimensional section less ideal bar; U: its "
+    "uncertainty; diff: (hand - sum) over |sum|, or over a tenth of the station's larger stress; width at: where over the "
+    "face's width the hoop stress is largest. Stress > 0 tension."
+)
 _BUDGET_LEGEND = (
     "thick: ideal plane-stress bar less hand theory; width: three-dimensional section less ideal bar; introd.: FE less "
     "ideal bar (loads, joints, tapers); radial: largest over the depth, ideal bar; across: stress across the face, "
@@ -50,6 +55,25 @@ class HandRow:
     inner_straight: float
     outer_straight: float
     radial_max: float | None
+
+
+@dataclass(frozen=True)
+class LadderRow:
+    """One fibre of a station without a mesh (stresses): hand theory and what the section alone adds to it.
+
+    ``difference``: (hand - settled)/reference with settled = hand + thick + width, the reference of a comparison;
+    ``uncertainty`` is that of ``width``.
+    """
+
+    station: str
+    curvature_ratio: float | None
+    fibre: str
+    hand: float
+    thick: float
+    width: float
+    uncertainty: float
+    difference: float | None
+    place: str | None
 
 
 def show(output: RenderableType, stream: TextIO) -> None:
@@ -129,6 +153,57 @@ def hand_table(title: str, units: Units, rows: Sequence[HandRow]) -> Group:
         Text(),
         _heading("Cautions"),
         *_items(CAUTIONS),
+    )
+
+
+def ladder_table(title: str, units: Units, rows: Sequence[LadderRow], band: float) -> Group:
+    """What ``hand --ladder`` prints: thick and width of every station, and whether the theory may be used."""
+    stress = common_scale(value for row in rows for value in (row.hand, row.hand + row.thick + row.width))
+    unit = stress.unit(units.stress)
+    heads = ("hand", "thick", "width", "sum", "±U")
+    table = _table("station", "R/h", "fibre", *(f"{head}\n[{unit}]" for head in heads), "diff\n[%]", "width at")
+    for row in rows:
+        total = row.hand + row.thick + row.width
+        decimals = stress.decimals(row.hand, total)
+        table.add_row(
+            Text(row.station),
+            "straight" if row.curvature_ratio is None else f"{row.curvature_ratio:.4g}",
+            row.fibre,
+            *(stress.text(value, decimals) for value in (row.hand, row.thick, row.width, total)),
+            stress.bound(row.uncertainty, decimals),
+            percent(row.difference),
+            row.place or "-",
+        )
+    return Group(
+        Text(title, style="bold"),
+        Text(),
+        _heading("Hand theory and the section alone, no mesh of the member"),
+        *_items([_usable(rows, band)]),
+        Text(),
+        table,
+        Text(_LADDER_LEGEND, style="dim"),
+        Text(),
+        _heading("Cautions"),
+        *_items(CAUTIONS),
+    )
+
+
+def _usable(rows: Sequence[LadderRow], band: float) -> str:
+    """Whether the section and its curvature alone leave the theory within the band."""
+    off = [(abs(row.difference), row) for row in rows if row.difference is not None]
+    if not off:
+        return "No station carries a stress."
+    largest, row = max(off, key=lambda item: item[0])
+    where = f"{row.station}, {row.fibre} fibre: {100.0 * largest:.1f} %"
+    beyond = sum(share > band for share, _ in off)
+    if not beyond:
+        return (
+            f"Thickness and section leave the hand theory within the band of {100.0 * band:g} % at every station "
+            f"(most at {where}). Loads, supports and joints are not looked at here: run check."
+        )
+    return (
+        f"Thickness and section alone put the hand theory beyond the band of {100.0 * band:g} % on {beyond} of "
+        f"{len(off)} loaded fibres (most at {where})."
     )
 
 
