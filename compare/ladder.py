@@ -14,6 +14,8 @@ from dataclasses import dataclass
 from functools import lru_cache
 from typing import Literal
 
+from threadpoolctl import threadpool_limits
+
 from intrados.compare.results import Budget
 from intrados.fem.toroid import FaceStress, Toroid, toroid
 from intrados.theory.ideal import bar
@@ -52,8 +54,12 @@ def rungs(section: Section, R: float | None, nu: float, N: float, M: float) -> t
 
 @lru_cache(maxsize=256)
 def solved_section(section: Section, R: float, nu: float) -> Toroid:
-    """The three-dimensional bar of a section, solved once for all stations and cases that share it."""
-    return toroid(section, R, nu)
+    """The three-dimensional bar of a section, solved once for all stations and cases that share it.
+
+    On one BLAS thread, as the membrane is (see accuracy.refine).
+    """
+    with threadpool_limits(limits=1, user_api="blas"):
+        return toroid(section, R, nu)
 
 
 def budget(hand: float, fe: float, of: Rungs) -> Budget:

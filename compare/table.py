@@ -21,8 +21,8 @@ WIDTH = 100
 _RULED = Box("    \n    \n -- \n    \n    \n    \n    \n    \n", ascii=True)
 _LADDER_LEGEND = (
     "thick: ideal plane-stress bar less hand theory; width: three-dimensional section less ideal bar; U: its "
-    "uncertainty; diff: (hand - sum) over |sum|, or over a tenth of the station's larger stress; width at: where over the "
-    "face's width the hoop stress is largest. Stress > 0 tension."
+    "uncertainty; diff: (hand - sum) over |sum|, or over a tenth of the station's larger stress; width at: where over "
+    "the face's width the hoop stress is largest. Stress > 0 tension."
 )
 _BUDGET_LEGEND = (
     "thick: ideal plane-stress bar less hand theory; width: three-dimensional section less ideal bar; introd.: FE less "
