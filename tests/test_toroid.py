@@ -115,7 +115,7 @@ def test_equilibrium_and_area_to_rounding(name: str, ratio: float) -> None:
     at = lattice(half_section(section, R), R, 0.3, 6)
     solved = states(at)
     size = np.abs(solved.per_M.hoop).max() * section.area
-    assert 2.0 * at.area.sum() == pytest.approx(section.area, rel=1e-6 if name in ROUND else 1e-12)
+    assert 2.0 * at.area.sum() == pytest.approx(section.area, rel=2e-6 if name in ROUND else 1e-12)
     assert abs(solved.per_M.N) <= 1e-8 * size
     assert (solved.per_M.M, solved.per_N.N) == pytest.approx((1.0, 1.0), rel=1e-8)
     assert abs(solved.per_N.M) <= 1e-8 * section.depth
