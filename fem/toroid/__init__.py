@@ -16,9 +16,9 @@ import numpy as np
 
 from intrados.fem.toroid.cells import Corner, HalfSection
 from intrados.fem.toroid.layers import layered
-from intrados.fem.toroid.states import States, lattice, states
+from intrados.fem.toroid.states import States, lattice, solve_states
 from intrados.fem.toroid.trace import FaceTrace, SectionMap, face_trace, section_map
-from intrados.fem.toroid.tube import tube
+from intrados.fem.toroid.tube import tubular
 from intrados.theory.load import Face
 from intrados.theory.quadrature import Array
 from intrados.theory.section import EllipticChord, Section
@@ -216,12 +216,12 @@ def toroid(section: Section, R: float, nu: float, target: float = 5e-4) -> Toroi
 def half_section(section: Section, R: float) -> HalfSection:
     """The cells of the half section of a bar bent to the centroid radius ``R`` (length)."""
     if any(isinstance(chord, EllipticChord) for layer in section.layers for chord in layer.void):
-        return tube(section)
+        return tubular(section)
     return layered(section, R)
 
 
 def _read(half: HalfSection, R: float, nu: float, degree: int) -> Solution:
-    solved = states(lattice(half, R, nu, degree))
+    solved = solve_states(lattice(half, R, nu, degree))
     inner, outer = face_trace(solved, half.inner, "inner"), face_trace(solved, half.outer, "outer")
     return Solution(degree, solved, inner, outer)
 
