@@ -46,9 +46,8 @@ class FaceStress:
 
     ``value`` is the hoop stress of largest magnitude over the face's width, at ``z`` (length) from the plane of
     bending: a ``place`` "over the web" lies on a flange where the web joins it from behind. ``mid`` and ``edge`` are
-    the hoop stress at mid-width and at the edge; ``transverse`` is the stress across the face where the hoop stress is
-    ``value``. ``von_mises`` and ``tresca`` are the largest over the face. ``uncertainty`` is the numerical
-    uncertainty of the hoop stress.
+    the hoop stress at mid-width and at the edge; ``transverse`` is the stress across the face at ``z``; ``von_mises``
+    and ``tresca`` are the largest over the face. ``uncertainty`` is the numerical uncertainty of the hoop stress.
     """
 
     value: float
@@ -131,11 +130,15 @@ class Toroid:
         coarse, fine = self.coarse.trace(side), self.fine.trace(side)
         acting = np.array([N, M])
         hoop, transverse = acting @ fine.hoop, acting @ fine.transverse
-        at = int(np.abs(hoop).argmax())
+        largest = int(np.abs(hoop).argmax())
         change = np.abs(hoop - acting @ coarse.hoop).max()
+        uncertainty = float(max(_FACTOR * change, _LEAST * np.abs(hoop).max()))
+        # Where mid-width or edge cannot be told from the largest, that is the place.
+        near = np.abs(hoop) >= np.abs(hoop[largest]) - uncertainty
+        at = next((end for end in (0, len(hoop) - 1) if near[end]), largest)
         stress = np.array([hoop, np.zeros_like(hoop), transverse, np.zeros_like(hoop)])
         return FaceStress(
-            value=float(hoop[at]),
+            value=float(hoop[largest]),
             z=float(fine.z[at]),
             place=self._place(side, float(fine.z[at]), float(fine.z[-1])),
             mid=float(hoop[0]),
@@ -143,7 +146,7 @@ class Toroid:
             transverse=float(transverse[at]),
             von_mises=float(von_mises(stress).max()),
             tresca=float(tresca(stress).max()),
-            uncertainty=float(max(_FACTOR * change, _LEAST * np.abs(hoop).max())),
+            uncertainty=uncertainty,
         )
 
     def von_mises(self, N: float, M: float) -> Peak:
