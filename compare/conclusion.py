@@ -37,9 +37,9 @@ def _about_sections(job: Job) -> list[str]:
     found = []
     if unsettled:
         found.append(
-            f"Plane stress alone does not settle section {', '.join(unsettled)}: flanges and walls curl out of the "
-            "plane and can carry tens of percent less than both the hand theory and this FE give them. "
-            "No station there is given a 'holds'."
+            f"Plane stress alone does not settle section {', '.join(unsettled)}: flanges and walls bend out of "
+            "the plane, and the stress where they meet the web can be tens of percent higher than both the hand theory "
+            "and this FE say. No station there is given a 'holds'."
         )
     if doubtful:
         found.append(

@@ -10,12 +10,16 @@ from intrados.fem.membrane import Membrane, Numbers, first_line, last_line
 from intrados.fem.trace import across_cut
 from intrados.theory.quadrature import Array, unit_gauss
 
+# Share of a row's depth from an edge at which a stress is taken where the mapping has no gradient on the edge.
+_JUST_INSIDE = 1e-6
+
 
 def forces_beyond(membrane: Membrane, displacement: Array, forces: Array, line: int) -> Array:
     """Fx, Fy and moment about the origin, shape (3), that the part beyond a line exerts on the part before it.
 
-    From nodal forces: what the stiffness of the elements before the line has taken up, less the loads on them. The
-    sum is over the cut's own unknowns, which is exact on any mesh; ``forces`` are the consistent element forces.
+    From nodal forces: what the stiffness of the elements beside the line has taken up, less the loads on them. The
+    sum is over the cut's own unknowns, which is exact on any mesh; ``forces`` are the consistent element forces of
+    the loads between the ends, so that on the line of an end the answer is the load or the reaction there.
     """
     before = line == len(membrane.strip.columns)
     column = line - 1 if before else line
@@ -71,7 +75,10 @@ def stresses(membrane: Membrane, displacement: Array, elements: Numbers, points:
 
     Where a row starts as a square root of the depth its edge has no gradient: the value just inside is taken.
     """
-    inside = np.array([points[0], np.clip(points[1], 1e-6, 1.0 - 1e-6)])
+    ends = np.array([0.0, 1.0])
+    rates = np.array([row.eta_rate(ends) for row in membrane.strip.rows])[np.unique(elements % membrane.rows)]
+    low, high = np.where(rates.min(axis=0) <= 1e-12, _JUST_INSIDE, 0.0)
+    inside = np.array([points[0], np.clip(points[1], low, 1.0 - high)])
     count = membrane.scalars.shape[1]
     _, gradients = basis(membrane.square.degree, inside)
     local = displacement[membrane.vectors[elements]].reshape(len(elements), 2, count).transpose(1, 0, 2)

@@ -22,11 +22,17 @@ from intrados.theory.statics import Loading, end_place, end_wrench
 _EXTRA_POINTS = 6
 
 
-def element_forces(membrane: Membrane, loading: Loading) -> Array:
-    """Consistent forces (elements, 2 basis) of all loads of a case, ordered as ``membrane.vectors``."""
+def forces_inside(membrane: Membrane, loading: Loading) -> Array:
+    """Consistent forces (elements, 2 basis) of the loads that enter between the ends, as ``membrane.vectors``."""
     total = np.zeros(membrane.vectors.shape)
     for spread in loading.spreads:
         total += _with_resultant(membrane, _spread_parts(membrane, spread), spread.wanted())
+    return total
+
+
+def forces_on_ends(membrane: Membrane, loading: Loading) -> Array:
+    """Consistent forces (elements, 2 basis) of the loads on the ends, ordered as ``membrane.vectors``."""
+    total = np.zeros(membrane.vectors.shape)
     for load in loading.end_loads:
         total += _with_resultant(membrane, _end_parts(membrane, load), end_wrench(membrane.strip.member, load))
     return total

@@ -15,6 +15,9 @@ from typing import Any
 import numpy as np
 from numpy.typing import NDArray
 
+# Loaded here and not where it is called: threads of a library can be limited only once it is loaded.
+from scipy.linalg import cho_solve_banded, cholesky_banded
+
 from intrados.fem.element import ReferenceSquare, reference_square
 from intrados.fem.strip import Strip
 from intrados.theory.quadrature import Array
@@ -137,8 +140,6 @@ class Membrane:
     @cached_property
     def factor(self) -> Array:
         """Banded Cholesky factor of the skeleton's stiffness, held unknowns removed (unit rows in their place)."""
-        from scipy.linalg import cholesky_banded
-
         unknowns = self.vectors[:, self._skeleton]
         size = int(unknowns.max()) + 1
         rows = np.repeat(unknowns[:, :, None], unknowns.shape[1], axis=2)
@@ -155,8 +156,6 @@ class Membrane:
 
     def solve(self, element_forces: Array) -> Array:
         """Displacements (unknowns, cases) under consistent forces (elements, 2 basis, cases)."""
-        from scipy.linalg import cho_solve_banded
-
         shared, own = self._skeleton, self._bubbles
         inverse, following, _ = self._condensed
         passed_on = following.transpose(0, 2, 1) @ element_forces[:, own]

@@ -59,9 +59,8 @@ def mesh(strip: Strip) -> Any:
     i = np.searchsorted(along, middle[0]) - 1
     j = np.searchsorted(across, middle[1]) - 1
     quads = quads[np.lexsort((j, i))]
-    around = np.arctan2(points[1, quads] - middle[1][np.lexsort((j, i))][:, None], 0.0 * quads)
-    left = points[0, quads] < np.mean(points[0, quads], axis=1, keepdims=True)
-    order = np.argsort(np.where(around < 0.0, np.where(left, 0, 1), np.where(left, 3, 2)), axis=1)
+    right, high = (side > side.mean(axis=1, keepdims=True) for side in points[:, quads])
+    order = np.argsort(np.where(high, 3 - right, right), axis=1)
     quads = np.take_along_axis(quads, order, axis=1)
     _assert_lattice(points[:, quads], along, across)
     result = skfem.MeshQuad(points, quads.T, sort_t=False, validate=False)

@@ -6,8 +6,9 @@ import numpy as np
 import pytest
 from skfem import ElementQuadP
 
-from intrados.fem.element import basis, reference_square, unit_gauss
+from intrados.fem.element import basis, reference_square
 from intrados.fem.membrane import first_line, last_line
+from intrados.theory.quadrature import unit_gauss
 
 DEGREES = [3, 4, 7, 10]
 POINTS = np.random.default_rng(0).random((2, 9))

@@ -33,6 +33,7 @@ from scipy.optimize import fsolve
 from intrados.fem.accuracy import FACES, Pair, refine
 from intrados.fem.membrane import Elastic
 from intrados.theory import shapes
+from intrados.theory.load import EndLoad
 from intrados.theory.member import Member, Straight
 from intrados.theory.quadrature import Array
 from intrados.theory.section import Section
@@ -76,7 +77,7 @@ def test_quarter_bar_under_end_moments_has_golovins_fibre_stresses() -> None:
 def test_quarter_bar_pulled_through_its_centre_has_its_cosine() -> None:
     at = stations((0, 1.0 / 6.0), (0, 0.5), (0, 5.0 / 6.0))
     case = pulled_through_centre(rectangular_bar(30.0, 70.0, 10.0), 2000.0)
-    pair = refine((case,), at, ((True,) * 3,), STEEL, 0.002).pair
+    pair = refine((case,), at, ((True,) * 3,), STEEL, 1e-4).pair
     for station, degrees in zip(at, (15.0, 45.0, 75.0), strict=True):
         wanted = THROUGH_CENTRE * math.cos(math.radians(degrees))
         found = pair.fine.fibre(0, "inner", station)
@@ -84,7 +85,7 @@ def test_quarter_bar_pulled_through_its_centre_has_its_cosine() -> None:
         assert abs(found - wanted) <= pair.at(0, "inner", station)
 
 
-@pytest.mark.parametrize("b", [36.0, 70.0, 120.0])
+@pytest.mark.parametrize("b", [60.0, 70.0, 120.0])
 def test_convergence_with_the_degree_is_geometric(b: float) -> None:
     """At stations the error falls at least fivefold a degree, and its logarithm is a straight line in the degree."""
     case = straightened(rectangular_bar(30.0, b, 10.0), 1e5)
@@ -127,24 +128,46 @@ def test_the_decay_of_the_flat_strip_is_the_published_one() -> None:
     assert (z.real, z.imag) == pytest.approx((2.0 * 2.106, 2.0 * 1.125), abs=1e-3)
 
 
-@pytest.mark.parametrize("b", [31.0, 70.0])
-def test_what_a_clamp_disturbs_dies_as_saint_venant_says(b: float) -> None:
-    """Three equally spaced differences in a row follow d'' - 2 exp(-x) cos(y) d' + exp(-2x) d = 0, k step = x + i y."""
-    a, steps = 30.0, 24
-    step = 0.06 * (b - a) / (0.5 * (a + b))
-    sweep = math.degrees(60 * step)
-    case = with_ends(straightened(rectangular_bar(a, b, 10.0, sweep), 1e5), "clamped", "free")
-    at = stations(*[(0, (0.9 / 0.06 + index) / 60) for index in range(steps)])
-    found = fibres(solved(case, at, 7), at) - exact_fibres(case, at)
-    rows = np.concatenate([np.stack([d[:-2], d[1:-1]], axis=1) for d in found.T])
-    right = np.concatenate([d[2:] for d in found.T])
+def decay(differences: Array, step: float) -> complex:
+    """k of exp(-k s) cos(...) from equally spaced values, (faces, n): d'' = 2 exp(-x) cos(y) d' - exp(-2x) d."""
+    rows = np.concatenate([np.stack([d[:-2], d[1:-1]], axis=1) for d in differences])
+    right = np.concatenate([d[2:] for d in differences])
     # Every row weighs alike, however far the disturbance has fallen.
     weight = 1.0 / np.hypot(*rows.T)
     low, high = np.linalg.lstsq(rows * weight[:, None], right * weight, rcond=None)[0]
     k = -cmath.log(0.5 * high + cmath.sqrt(0.25 * high * high + low)) / step
-    wanted = decay_of_curved_bar(b / a)
-    assert k.real == pytest.approx(wanted.real, rel=0.02)
-    assert abs(k.imag) == pytest.approx(wanted.imag, rel=0.02)
+    return complex(k.real, abs(k.imag))
+
+
+@pytest.mark.parametrize("b", [40.0, 70.0, 120.0])
+def test_what_a_clamp_disturbs_dies_along_an_arc_as_saint_venant_says(b: float) -> None:
+    """From 1.2 depths off the clamp on only the slowest mode is left: its rate and its wave, to 0.2 %."""
+    step = 0.2 * (b - 30.0) / (0.5 * (b + 30.0))
+    case = with_ends(straightened(rectangular_bar(30.0, b, 10.0, math.degrees(20 * step)), 1e5), "clamped", "free")
+    at = stations(*[(0, (6 + index) / 20) for index in range(8)])
+    found = decay((fibres(solved(case, at, 7), at) - exact_fibres(case, at)).T, step)
+    wanted = decay_of_curved_bar(b / 30.0)
+    assert found.real == pytest.approx(wanted.real, rel=2e-3)
+    assert found.imag == pytest.approx(wanted.imag, rel=2e-3)
+
+
+@pytest.mark.parametrize(
+    ("force", "moment", "mode"),
+    [(1e4, 0.0, complex(2 * 2.10620, 2 * 1.12536)), (0.0, 1e5, complex(2 * 3.74884, 2 * 1.38434))],
+    ids=["pull", "bending"],
+)
+def test_what_a_clamp_disturbs_dies_along_a_straight_as_saint_venant_says(
+    force: float, moment: float, mode: complex
+) -> None:
+    """The lowest even and odd roots of Fadle and Papkovich (memory), for half the depth as unit of length."""
+    section = shapes.rectangle(40.0, 10.0)
+    member = Member("inner", (0.0, 0.0), 0.0, (Straight(160.0, (section, section)),))
+    case = loading(member, "clamped", "free", (EndLoad("far", "end", (force, 0.0), moment),))
+    at = stations(*[(0, (8 + index) / 40) for index in range(7)])
+    elementary = np.array([force, force]) / 400.0 + np.array([-1.0, 1.0]) * moment * 6.0 / (10.0 * 40.0**2)
+    found = decay((fibres(solved(case, at, 9), at) - elementary).T, 0.1)
+    assert found.real == pytest.approx(mode.real, rel=1e-2)
+    assert found.imag == pytest.approx(mode.imag, rel=1e-2)
 
 
 def test_a_clamp_moves_the_fibre_stress_as_the_zone_rule_supposes() -> None:
@@ -187,7 +210,7 @@ def test_on_an_arc_every_section_converges_geometrically(section: Section) -> No
     found = [fibres(solved(case, MIDDLE, p), MIDDLE) for p in (3, 4, 5, 6, 9)]
     errors = np.array([np.abs(values - found[-1]).max() / np.abs(found[-1]).max() for values in found[:-1]])
     assert np.polyfit(np.arange(4), np.log10(errors), 1)[0] < -0.5
-    assert errors[-1] < 2e-6
+    assert errors[-1] < 1e-5
 
 
 def published_bar(row: dict[str, Any]) -> tuple[Section, float]:
@@ -206,20 +229,21 @@ def published_bar(row: dict[str, Any]) -> tuple[Section, float]:
     return shapes.i_section(depth, web, flange, thickness, *outer[0]), size["ri"]
 
 
-@pytest.mark.parametrize(
-    "row", TOROID["cases"], ids=lambda row: f"{row['section']}-{row['R']:.4g}-{max(row['geometry'].values(), key=str)}"
-)
+@pytest.mark.parametrize("row", TOROID["cases"], ids=lambda row: f"{row['section']}-{row['R']:.4g}-nu{row['nu']}")
 def test_plane_stress_of_every_section_equals_the_reference_membrane(row: dict[str, Any]) -> None:
-    """Within the 0.3 % the table is good to, in the middle of an arc long enough to forget how its ends are loaded."""
+    """In the middle of an arc long enough to forget how its ends are loaded: more than once round, if need be.
+
+    The table promises 0.3 % for its 3-D values; its membrane values turn out to be good to 0.05 %.
+    """
     section, inner_radius = published_bar(row)
     R = inner_radius + section.centroid
     assert pytest.approx(row["R"], rel=1e-7) == R
-    sweep = min(330.0, math.degrees(5.0 * section.depth / R))
-    member = bar(section, inner_radius, sweep)
+    # Web and flanges of a stepped section pass on a disturbance about half as fast as a solid bar of the depth does.
+    fading = 8.0 if len(section.layers) == 1 else 16.0
+    rate = decay_of_curved_bar(1.0 + section.depth / inner_radius).real
+    member = bar(section, inner_radius, math.degrees(2.0 * fading / rate))
     for state, case in (("n0", straightened(member, 1.0)), ("n1", pulled_through_centre(member, 1.0))):
         N, _, M = case.resultants(0, 0.5)
         unit = M if state == "n0" else N
-        found = fibres(solved(case, MIDDLE, 7, elastic=Elastic(1.0, row["nu"])), MIDDLE)[0] / unit
-        wanted = np.array([row[state]["mem_i"], row[state]["mem_o"]])
-        assert np.abs(found - wanted).max() <= 0.003 * np.abs(wanted).max()
-        assert found == pytest.approx(wanted, rel=0.003)
+        found = fibres(solved(case, MIDDLE, 5, elastic=Elastic(1.0, row["nu"])), MIDDLE)[0] / unit
+        assert found == pytest.approx([row[state]["mem_i"], row[state]["mem_o"]], rel=5e-4)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import math
+from dataclasses import replace
 
 import numpy as np
 import pytest
@@ -234,6 +235,8 @@ def test_extent_is_degrees_of_an_arc_and_length_of_a_straight() -> None:
     assert [hook(turning=-1).extent(piece) for piece in range(4)] == [90.0, 120.0, 70.0, 50.0]
 
 
-def test_size_is_the_larger_side_of_the_box_around_the_member() -> None:
+def test_size_is_the_largest_distance_between_two_points_of_the_centroid_line() -> None:
     u = member(straight(50.0), arc(30.0, 180.0), straight(50.0))
-    assert u.size == pytest.approx(80.0, rel=1e-12)
+    # From the tip of one leg, through the centre of the bend, to the far side of the bend.
+    assert u.size == pytest.approx(np.hypot(50.0, 30.0) + 30.0, rel=1e-3)
+    assert replace(u, heading=37.0).size == pytest.approx(u.size, rel=1e-12)

@@ -18,7 +18,7 @@ from skfem.mapping import MappingIsoparametric
 from skfem.models.elasticity import linear_elasticity, linear_stress, plane_stress
 
 from intrados.fem.element import basis
-from intrados.fem.introduction import element_forces
+from intrados.fem.introduction import forces_inside, forces_on_ends
 from intrados.fem.membrane import Membrane, discretise
 from intrados.theory.load import BodyLoad, EndLoad
 from intrados.theory.member import Arc, Member, Straight
@@ -49,6 +49,10 @@ def loaded(member: Member, start: Support = "free", end: Support = "free") -> Lo
 def discretised(case: Loading, degree: int) -> tuple[Membrane, Any]:
     strip, mesh = strip_and_mesh(case, ())
     return discretise(strip, mesh, STEEL, degree, case.start, case.end), mesh
+
+
+def all_forces(membrane: Membrane, case: Loading) -> Array:
+    return forces_inside(membrane, case) + forces_on_ends(membrane, case)
 
 
 def assembled(membrane: Membrane) -> Any:
@@ -128,7 +132,7 @@ def test_rigid_motions_need_no_force(case: Loading) -> None:
 def test_the_condensed_banded_solution_is_the_plain_one(supports: tuple[Support, Support], degree: int) -> None:
     case = loaded(bent_over(), *supports)
     membrane, _ = discretised(case, degree)
-    forces = element_forces(membrane, case)
+    forces = all_forces(membrane, case)
     total = np.bincount(membrane.vectors.ravel(), weights=forces.ravel(), minlength=membrane.unknowns)
     free = np.setdiff1d(np.arange(membrane.unknowns), membrane.held)
     plain = np.zeros(membrane.unknowns)
@@ -141,7 +145,7 @@ def test_the_condensed_banded_solution_is_the_plain_one(supports: tuple[Support,
 def test_the_held_unknowns_of_a_free_member_carry_nothing() -> None:
     for case in (loaded(bent_over()), pulled_through_centre(rectangular_bar(30.0, 70.0, 10.0), 2000.0)):
         membrane, _ = discretised(case, 6)
-        forces = element_forces(membrane, case)
+        forces = all_forces(membrane, case)
         moved = membrane.solve(forces[:, :, None])[:, 0]
         total = np.bincount(membrane.vectors.ravel(), weights=forces.ravel(), minlength=membrane.unknowns)
         left = assembled(membrane) @ moved - total
@@ -154,7 +158,7 @@ def test_reactions_of_a_clamped_end_balance_the_loads() -> None:
     loads = (EndLoad("pull", "end", (300.0, -200.0), 4e3), BodyLoad("b", 0, 0.5, (50.0, 70.0), -9e3, 20.0))
     case = loading(member, "clamped", "free", loads)
     membrane, _ = discretised(case, 5)
-    forces = element_forces(membrane, case)
+    forces = all_forces(membrane, case)
     total = np.bincount(membrane.vectors.ravel(), weights=forces.ravel(), minlength=membrane.unknowns)
     left = assembled(membrane) @ membrane.solve(forces[:, :, None])[:, 0] - total
     # The work of the nodal forces on a unit motion of the whole: it is the four vertex functions that make one.
@@ -179,7 +183,7 @@ def test_the_volume_is_area_times_the_way_of_the_centroid(section: Section) -> N
 def test_displacement_and_geometry_go_on_across_every_edge() -> None:
     case = loaded(bent_over())
     membrane, _ = discretised(case, 5)
-    moved = membrane.solve(element_forces(membrane, case)[:, :, None])[:, 0]
+    moved = membrane.solve(all_forces(membrane, case)[:, :, None])[:, 0]
     count = membrane.scalars.shape[1]
     local = moved[membrane.vectors].reshape(-1, 2, count).transpose(1, 0, 2)
     q, rows = np.linspace(0.0, 1.0, 7), membrane.rows
