@@ -130,8 +130,7 @@ def no_resultant(at: States, part: Array) -> float:
 
 
 def test_radial_equilibrium_of_the_section_as_a_whole() -> None:
-    # r times the equilibrium along r, over the section: int (sigma_r + sigma_theta) dA = 0 as the outline is free.
-    # The virtual displacement U = r lies in the space, so the balance is exact on any mesh.
+    # The virtual displacement U = r lies in the space, so that int (sigma_r + sigma_theta) r dA = 0 on any mesh.
     section = EVERY_SECTION["T, flange inside"]
     solved = solve_states(lattice(half_section(section, 50.0), 50.0, 0.3, 6))
     lever = solved.per_M.lattice.R + solved.per_M.lattice.local

@@ -13,6 +13,7 @@ from functools import cached_property
 from typing import Literal
 
 import numpy as np
+from threadpoolctl import threadpool_limits
 
 from intrados.fem.toroid.cells import Corner, HalfSection
 from intrados.fem.toroid.layers import layered
@@ -207,12 +208,14 @@ def toroid(section: Section, R: float, nu: float, target: float = 5e-4) -> Toroi
     section.ring(R)
     half = half_section(section, R)
     affordable = [degree for degree in _DEGREES if len(half.cells) * degree**2 <= _MOST_NODES]
-    coarse = _read(half, R, nu, _DEGREES[0])
-    fine = _read(half, R, nu, _DEGREES[1])
-    for degree in affordable[2:]:
-        if _FACTOR * _change(coarse.faces, fine.faces) <= target:
-            break
-        coarse, fine = fine, _read(half, R, nu, degree)
+    # More threads would wait for each other: the matrices are small.
+    with threadpool_limits(limits=1, user_api="blas"):
+        coarse = _read(half, R, nu, _DEGREES[0])
+        fine = _read(half, R, nu, _DEGREES[1])
+        for degree in affordable[2:]:
+            if _FACTOR * _change(coarse.faces, fine.faces) <= target:
+                break
+            coarse, fine = fine, _read(half, R, nu, degree)
     return Toroid(section, R, nu, half, coarse, fine)
 
 
