@@ -15,7 +15,7 @@ from hypothesis import strategies as st
 from rescaling import rescaled
 
 from intrados.fem.toroid import Toroid, half_section, toroid, tresca, von_mises
-from intrados.fem.toroid.states import States, lattice, states
+from intrados.fem.toroid.states import States, lattice, solve_states
 from intrados.fem.toroid.trace import face_trace
 from intrados.theory import shapes
 from intrados.theory.load import Face
@@ -113,9 +113,9 @@ def test_equilibrium_and_area_to_rounding(name: str, ratio: float) -> None:
     section = EVERY_SECTION[name]
     R = max(ratio * section.depth, 1.2 * section.centroid)
     at = lattice(half_section(section, R), R, 0.3, 6)
-    solved = states(at)
+    solved = solve_states(at)
     size = np.abs(solved.per_M.hoop).max() * section.area
-    assert 2.0 * at.area.sum() == pytest.approx(section.area, rel=1e-6 if name in ROUND else 1e-12)
+    assert 2.0 * at.area.sum() == pytest.approx(section.area, rel=2e-6 if name in ROUND else 1e-12)
     assert abs(solved.per_M.N) <= 1e-8 * size
     assert (solved.per_M.M, solved.per_N.N) == pytest.approx((1.0, 1.0), rel=1e-8)
     assert abs(solved.per_N.M) <= 1e-8 * section.depth
@@ -130,10 +130,9 @@ def no_resultant(at: States, part: Array) -> float:
 
 
 def test_radial_equilibrium_of_the_section_as_a_whole() -> None:
-    # r times the equilibrium along r, over the section: int (sigma_r + sigma_theta) dA = 0 as the outline is free.
-    # The virtual displacement U = r lies in the space, so the balance is exact on any mesh.
+    # The virtual displacement U = r lies in the space, so that int (sigma_r + sigma_theta) r dA = 0 on any mesh.
     section = EVERY_SECTION["T, flange inside"]
-    solved = states(lattice(half_section(section, 50.0), 50.0, 0.3, 6))
+    solved = solve_states(lattice(half_section(section, 50.0), 50.0, 0.3, 6))
     lever = solved.per_M.lattice.R + solved.per_M.lattice.local
     assert abs(no_resultant(solved, (solved.per_M.radial + solved.per_M.hoop) * lever)) < 1e-8
     # W = z: int sigma_z r dA = 0.
@@ -185,7 +184,7 @@ def test_no_digits_are_lost_in_slender_bars() -> None:
 def inner_changes(section: Section, R: float, degrees: range) -> list[float]:
     """Change of the inner face's hoop stress per M from each degree to the next, as a share of its largest."""
     half = half_section(section, R)
-    rows = [face_trace(states(lattice(half, R, 0.3, p)), half.inner, "inner").hoop[1] for p in degrees]
+    rows = [face_trace(solve_states(lattice(half, R, 0.3, p)), half.inner, "inner").hoop[1] for p in degrees]
     return [float(np.abs(b - a).max() / np.abs(b).max()) for a, b in itertools.pairwise(rows)]
 
 
@@ -204,7 +203,7 @@ def test_the_stated_uncertainty_covers_the_change_to_a_much_higher_degree(name: 
     section = EVERY_SECTION[name]
     R = 0.3 * section.depth + section.centroid
     bar, half = toroid(section, R, 0.3), half_section(section, R)
-    better = states(lattice(half, R, 0.3, bar.fine.degree + 2))
+    better = solve_states(lattice(half, R, 0.3, bar.fine.degree + 2))
     for side, cells in zip(SIDES, (half.inner, half.outer), strict=True):
         trace = face_trace(better, cells, side)
         for N, M in ((0.0, 1.0), (1.0, 0.0), (1.0, R)):

@@ -2,7 +2,7 @@
 
 A quarter of a ring is cut where symmetry or the state itself says how its end moves, so that the solid is the exact
 bar without any end effect: in bending the end turns as a plane, u_x = r there; pulled through the centre, it moves
-along y alone and is free of hoop stress.
+along y alone and is free of hoop stress. Twice the energy is the moment, or the force, times that movement.
 """
 
 from __future__ import annotations
@@ -41,10 +41,8 @@ def quarter_ring(outline: list[tuple[float, float]], size: float, degree: int) -
     return Mesh(OCCGeometry(solid).GenerateMesh(maxh=size)).Curve(degree)
 
 
-def hoop_at_start(
-    mesh: Any, degree: int, bending: bool, points: list[tuple[float, float]]
-) -> tuple[Array, float, float]:
-    """Hoop stress at points (r, z) of the start, with its N and int sigma r dA over the whole section."""
+def hoop_at_start(mesh: Any, degree: int, bending: bool, points: list[tuple[float, float]]) -> Array:
+    """Hoop stress at points (r, z) of the start, per unit M in bending, else per unit force through the centre."""
     import ngsolve as ng
 
     held = ("end", "start", "plane") if bending else ("", "start|end", "plane|end")
@@ -71,12 +69,9 @@ def hoop_at_start(
     rest = moved.vec.CreateVector()
     rest.data = -form.mat * moved.vec
     moved.vec.data += form.mat.Inverse(space.FreeDofs(), "sparsecholesky") * rest
+    rest.data = form.mat * moved.vec
     hoop = stress(moved.components)[1, 1]
-    on_start = ng.BoundaryFromVolumeCF(hoop)
-    over = ng.ds(definedon=mesh.Boundaries("start"))
-    N, turning = (2.0 * ng.Integrate(on_start * weight * over, mesh) for weight in (ng.CF(1.0), ng.x))
-    values = np.array([hoop(mesh(r, 1e-6, z)) for r, z in points])
-    return values, N, turning
+    return np.array([hoop(mesh(r, 1e-6, z)) for r, z in points]) / (2.0 * ng.InnerProduct(rest, moved.vec))
 
 
 @pytest.mark.parametrize(("section", "outline", "size", "degree"), [TRAPEZOID, TEE], ids=["trapezoid", "T"])
@@ -95,7 +90,10 @@ def test_faces_of_a_solid_quarter_ring(
         points.append((a + 1e-6 if side == "inner" else a + section.depth - 1e-6, float(np.clip(z, 1e-6, z - 1e-6))))
         expected.append([np.interp(z, trace.z, row) for row in trace.hoop])
     per_N, per_M = np.array(expected).T
-    bent, N, turning = hoop_at_start(mesh, degree, True, points)
-    print(N * R / turning, bent / (R * N - turning) / per_M - 1)
-    pulled, N, turning = hoop_at_start(mesh, degree, False, points)
-    print(turning / N / R, pulled / N / (per_N + R * per_M) - 1)
+    bent = hoop_at_start(mesh, degree, True, points)
+    pulled = hoop_at_start(mesh, degree, False, points)
+    # Half a percent of the largest: read straight from the stress in a cell of the solid, next to its surface.
+    assert bent == pytest.approx(per_M, abs=5e-3 * np.abs(per_M).max())
+    assert pulled == pytest.approx(per_N + R * per_M, abs=5e-3 * np.abs(per_N + R * per_M).max())
+    # Away from corners it is better.
+    assert bent[3:] == pytest.approx(per_M[3:], rel=1e-3)

@@ -13,12 +13,13 @@ from functools import cached_property
 from typing import Literal
 
 import numpy as np
+from threadpoolctl import threadpool_limits
 
 from intrados.fem.toroid.cells import Corner, HalfSection
 from intrados.fem.toroid.layers import layered
-from intrados.fem.toroid.states import States, lattice, states
+from intrados.fem.toroid.states import States, lattice, solve_states
 from intrados.fem.toroid.trace import FaceTrace, SectionMap, face_trace, section_map
-from intrados.fem.toroid.tube import tube
+from intrados.fem.toroid.tube import tubular
 from intrados.theory.load import Face
 from intrados.theory.quadrature import Array
 from intrados.theory.section import EllipticChord, Section
@@ -46,9 +47,8 @@ class FaceStress:
 
     ``value`` is the hoop stress of largest magnitude over the face's width, at ``z`` (length) from the plane of
     bending: a ``place`` "over the web" lies on a flange where the web joins it from behind. ``mid`` and ``edge`` are
-    the hoop stress at mid-width and at the edge; ``transverse`` is the stress across the face where the hoop stress is
-    ``value``. ``von_mises`` and ``tresca`` are the largest over the face. ``uncertainty`` is the numerical
-    uncertainty of the hoop stress.
+    the hoop stress at mid-width and at the edge; ``transverse`` is the stress across the face at ``z``; ``von_mises``
+    and ``tresca`` are the largest over the face. ``uncertainty`` is the numerical uncertainty of the hoop stress.
     """
 
     value: float
@@ -131,11 +131,15 @@ class Toroid:
         coarse, fine = self.coarse.trace(side), self.fine.trace(side)
         acting = np.array([N, M])
         hoop, transverse = acting @ fine.hoop, acting @ fine.transverse
-        at = int(np.abs(hoop).argmax())
+        largest = int(np.abs(hoop).argmax())
         change = np.abs(hoop - acting @ coarse.hoop).max()
+        uncertainty = float(max(_FACTOR * change, _LEAST * np.abs(hoop).max()))
+        # Where mid-width or edge cannot be told from the largest, that is the place.
+        near = np.abs(hoop) >= np.abs(hoop[largest]) - uncertainty
+        at = next((end for end in (0, len(hoop) - 1) if near[end]), largest)
         stress = np.array([hoop, np.zeros_like(hoop), transverse, np.zeros_like(hoop)])
         return FaceStress(
-            value=float(hoop[at]),
+            value=float(hoop[largest]),
             z=float(fine.z[at]),
             place=self._place(side, float(fine.z[at]), float(fine.z[-1])),
             mid=float(hoop[0]),
@@ -143,7 +147,7 @@ class Toroid:
             transverse=float(transverse[at]),
             von_mises=float(von_mises(stress).max()),
             tresca=float(tresca(stress).max()),
-            uncertainty=float(max(_FACTOR * change, _LEAST * np.abs(hoop).max())),
+            uncertainty=uncertainty,
         )
 
     def von_mises(self, N: float, M: float) -> Peak:
@@ -204,24 +208,26 @@ def toroid(section: Section, R: float, nu: float, target: float = 5e-4) -> Toroi
     section.ring(R)
     half = half_section(section, R)
     affordable = [degree for degree in _DEGREES if len(half.cells) * degree**2 <= _MOST_NODES]
-    coarse = _read(half, R, nu, _DEGREES[0])
-    fine = _read(half, R, nu, _DEGREES[1])
-    for degree in affordable[2:]:
-        if _FACTOR * _change(coarse.faces, fine.faces) <= target:
-            break
-        coarse, fine = fine, _read(half, R, nu, degree)
+    # More threads would wait for each other: the matrices are small.
+    with threadpool_limits(limits=1, user_api="blas"):
+        coarse = _read(half, R, nu, _DEGREES[0])
+        fine = _read(half, R, nu, _DEGREES[1])
+        for degree in affordable[2:]:
+            if _FACTOR * _change(coarse.faces, fine.faces) <= target:
+                break
+            coarse, fine = fine, _read(half, R, nu, degree)
     return Toroid(section, R, nu, half, coarse, fine)
 
 
 def half_section(section: Section, R: float) -> HalfSection:
     """The cells of the half section of a bar bent to the centroid radius ``R`` (length)."""
     if any(isinstance(chord, EllipticChord) for layer in section.layers for chord in layer.void):
-        return tube(section)
+        return tubular(section)
     return layered(section, R)
 
 
 def _read(half: HalfSection, R: float, nu: float, degree: int) -> Solution:
-    solved = states(lattice(half, R, nu, degree))
+    solved = solve_states(lattice(half, R, nu, degree))
     inner, outer = face_trace(solved, half.inner, "inner"), face_trace(solved, half.outer, "outer")
     return Solution(degree, solved, inner, outer)
 

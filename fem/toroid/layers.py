@@ -20,11 +20,13 @@ from intrados.fem.toroid.cells import SAME, Cell, Corner, FaceCells, HalfSection
 from intrados.theory.quadrature import Array
 from intrados.theory.section import Layer, Section, SectionError
 
-# Cells shrink by this factor toward a re-entrant corner, and toward the edge of a face, so often.
+# Cells shrink by this factor toward a re-entrant corner, toward the edge of a face, and toward one where the outline
+# runs on at an obtuse angle, so often.
 _SHRINK = 0.15
 _SHRINKINGS = 2
 _EDGE_SHRINKINGS = 1
-# The outline turns outward at least so much (radians) where a kink counts as a re-entrant corner.
+_OBTUSE_SHRINKINGS = 3
+# The outline turns at least so much (radians) where a kink counts: outward it is a re-entrant corner.
 _KINK = 0.25
 # A row reaches to twice the radius it starts from at most, and over half the depth.
 _RADIUS_RATIO = 2.0
@@ -48,15 +50,15 @@ def layered(section: Section, R: float) -> HalfSection:
     count = []
     for index, layer in enumerate(layers):
         grading = [
-            (end, joints[joint].scales[side], _SHRINKINGS)
+            (end, joints[joint].scales[side], joints[joint].shrinkings)
             for joint, side, end in ((index - 1, 1, layer.inner), (index, 0, layer.outer))
-            if 0 <= joint < len(joints) and joints[joint].corners
+            if 0 <= joint < len(joints) and joints[joint].shrinkings
         ]
         for end, is_face in ((layer.inner, index == 0), (layer.outer, index == len(layers) - 1)):
             half_width = 0.5 * _at(layer.width, end)
             if is_face and half_width > SAME * depth:
                 scale = min(half_width, _run(section, index, 1 if index == 0 else -1))
-                grading.append((end, scale, _EDGE_SHRINKINGS))
+                grading.append((end, scale, _edge_shrinkings(layer, end)))
         rows = _rows(layer, grading, depth, R - section.centroid)
         for first, last in itertools.pairwise(rows):
             low = partial(_straight, layer, first, last)
@@ -102,7 +104,8 @@ def _outline(layer: Layer, first: float, last: float, starts_round: bool, ends_r
 class _Joint:
     """Where two layers meet at ``x``: the ``spans`` of z of either, the one they share, and re-entrant corners there.
 
-    ``scales`` are the lengths over which cells shrink toward the corners in the layer before and the layer beyond.
+    ``scales`` are the lengths over which cells shrink toward the joint in the layer before and the layer beyond, so
+    often as ``shrinkings`` says; ``kink`` tells a kink of the outline outward (> 0) or inward (< 0) from none (0).
     """
 
     x: float
@@ -111,6 +114,8 @@ class _Joint:
     is_step: bool
     corners: tuple[Corner, ...]
     scales: tuple[float, float]
+    shrinkings: int
+    kink: int
 
 
 def _joint(section: Section, index: int) -> _Joint:
@@ -123,36 +128,39 @@ def _joint(section: Section, index: int) -> _Joint:
         raise SectionError("shape", f"at {x:g} from the inner face the section has no material across")
     stepped = [abs(spans[0][end] - spans[1][end]) > same for end in (0, 1)]
     places = [shared[end] for end in (0, 1) if stepped[end]]
-    if not stepped[1]:
-        step = 1e-4 * min(before.outer - before.inner, beyond.outer - beyond.inner)
-        slopes = [(shared[1] - _at(before.half_outline, x - step)), (_at(beyond.half_outline, x + step) - shared[1])]
-        if math.atan2(slopes[1], step) - math.atan2(slopes[0], step) > _KINK:
-            places.append(shared[1])
+    kink = 0 if stepped[1] else _kink(before, beyond, x)
+    if kink > 0:
+        places.append(shared[1])
     thick = wall if shared[0] > same else 2.0 * wall
     depths = [_run(section, index, -1), _run(section, index + 1, 1)]
     scales = (min(depths[0], thick), min(depths[1], thick))
     corners = tuple(Corner(x, z, _NEAR_CORNER * min(*depths, thick)) for z in places)
-    return _Joint(x, (spans[0], spans[1]), shared, any(stepped), corners, scales)
+    shrinkings = _SHRINKINGS if corners or kink else 0
+    return _Joint(x, (spans[0], spans[1]), shared, any(stepped), corners, scales, shrinkings, kink)
+
+
+def _kink(before: Layer, beyond: Layer, x: float) -> int:
+    """1 where the outline turns away from the plane of bending between two layers, -1 where toward it, 0 if little."""
+    step = 1e-4 * min(before.outer - before.inner, beyond.outer - beyond.inner)
+    inner = _at(before.half_outline, x) - _at(before.half_outline, x - step)
+    outer = _at(beyond.half_outline, x + step) - _at(beyond.half_outline, x)
+    turn = math.atan2(outer, step) - math.atan2(inner, step)
+    return int(math.copysign(1.0, turn)) if abs(turn) > _KINK else 0
 
 
 def _run(section: Section, index: int, way: int) -> float:
-    """Depth of the layers from one onward that follow each other without a step."""
+    """Depth of the layers from one onward that follow each other without a step or a kink."""
     total = 0.0
-    while 0 <= index < len(section.layers):
-        layer = section.layers[index]
+    layers = section.layers[index:] if way > 0 else section.layers[index::-1]
+    for layer, following in itertools.zip_longest(layers, layers[1:]):
         total += layer.outer - layer.inner
-        end = layer.outer if way > 0 else layer.inner
-        index += way
-        if 0 <= index < len(section.layers):
-            other = section.layers[index]
-            if (
-                max(
-                    abs(_at(layer.half_void, end) - _at(other.half_void, end)),
-                    abs(_at(layer.half_outline, end) - _at(other.half_outline, end)),
-                )
-                > SAME * section.depth
-            ):
-                break
+        if following is None:
+            break
+        before, beyond = (layer, following) if way > 0 else (following, layer)
+        ends = [(_at(one.half_void, before.outer), _at(one.half_outline, before.outer)) for one in (before, beyond)]
+        stepped = any(abs(one - other) > SAME * section.depth for one, other in zip(*ends, strict=True))
+        if stepped or _kink(before, beyond, before.outer):
+            break
     return total
 
 
@@ -187,6 +195,8 @@ def _columns(section: Section, joints: Sequence[_Joint]) -> list[list[float]]:
         for side, layer in enumerate((index, index + 1)):
             span = joint.spans[side]
             lines[layer] += [_share(z, span) for z in joint.shared]
+            if joint.kink < 0:
+                lines[layer] += [1.0 - share for share in _shrinking(1.0, 1.0, _SHRINKINGS)]
             if joint.corners:
                 for z in (corner.z for corner in joint.corners):
                     inward = 1.0 if z == low else -1.0
@@ -202,7 +212,8 @@ def _columns(section: Section, joints: Sequence[_Joint]) -> list[list[float]]:
         half_width = 0.5 * _at(section.layers[index].width, end)
         if half_width > same:
             scale = min(half_width, _run(section, index, 1 if index == 0 else -1))
-            lines[index] += [1.0 - length / half_width for length in _shrinking(scale, half_width, _EDGE_SHRINKINGS)]
+            times = _edge_shrinkings(section.layers[index], end)
+            lines[index] += [1.0 - length / half_width for length in _shrinking(scale, half_width, times)]
     for index in range(len(lines)):
         lines[index] = _fill(section, index, _distinct(lines[index], SAME))
     for order, way in ((range(len(joints)), 0), (range(len(joints) - 1, -1, -1), 1)):
@@ -213,6 +224,14 @@ def _columns(section: Section, joints: Sequence[_Joint]) -> list[list[float]]:
             shares = [_share(z, spans[1 - way]) for z in carried]
             lines[target] = _distinct([*lines[target], *(c for c in shares if SAME < c < 1.0 - SAME)], SAME)
     return lines
+
+
+def _edge_shrinkings(layer: Layer, end: float) -> int:
+    """How often cells shrink toward the edge of the face at an end of a layer."""
+    into = 1e-4 * (layer.outer - layer.inner)
+    inside = end + into if end == layer.inner else end - into
+    opening = math.atan2(_at(layer.half_outline, inside) - _at(layer.half_outline, end), into)
+    return _OBTUSE_SHRINKINGS if opening > _KINK else _EDGE_SHRINKINGS
 
 
 def _fill(section: Section, index: int, shares: list[float]) -> list[float]:
@@ -229,8 +248,9 @@ def _fill(section: Section, index: int, shares: list[float]) -> list[float]:
 
 def _shrinking(scale: float, room: float, times: int) -> list[float]:
     """Distances from a corner at which cells end."""
-    lengths = [scale * _SHRINK**power for power in range(1, times + 1)]
-    return [scale, *lengths] if scale < (1.0 - _SHRINK) * room else lengths
+    return [
+        length for length in (scale * _SHRINK**power for power in range(times + 1)) if length < (1.0 - _SHRINK) * room
+    ]
 
 
 def _share(z: float, span: tuple[float, float]) -> float:

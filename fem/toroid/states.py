@@ -318,7 +318,7 @@ class States:
     shear_force: float
 
 
-def states(lattice: Lattice) -> States:
+def solve_states(lattice: Lattice) -> States:
     """Both states of the section at one degree."""
     R, nodal_r = lattice.R, lattice.R + lattice.position[0] - lattice.half.section.centroid
     r = R + lattice.local

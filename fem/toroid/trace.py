@@ -19,7 +19,7 @@ from intrados.theory.load import Face
 from intrados.theory.quadrature import Array, unit_gauss
 
 # Places along the side of a cell, and along either coordinate of a cell, at which stress is given.
-_ALONG = np.linspace(0.0, 1.0, 17)
+_ALONG = 0.5 - 0.5 * np.cos(np.linspace(0.0, np.pi, 65))
 _WITHIN = np.linspace(0.0, 1.0, 7)
 
 

@@ -18,7 +18,7 @@ _SECTORS = 6
 _RING_RATIO = 2.0
 
 
-def tube(section: Section) -> HalfSection:
+def tubular(section: Section) -> HalfSection:
     """The cells of a tube; SectionError where outline or bore is not one ellipse, as on a taper of unlike tubes."""
     hollow = [layer for layer in section.layers if layer.void]
     outline = _ellipse(section.layers[0].chords)
