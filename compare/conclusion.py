@@ -26,7 +26,13 @@ _FIBRES: tuple[FibreName, FibreName] = ("inner", "outer")
 
 def notes(job: Job, cases: Sequence[tuple[StationResult, ...]]) -> tuple[str, ...]:
     """What the reader must know before any number, most important first."""
-    about = [_about_plane_stress(job, cases), *_about_loads(job), *_about_joints(job), *_about_motion(job)]
+    about = [
+        _about_plane_stress(job, cases),
+        _about_unknown_width(cases),
+        *_about_loads(job),
+        *_about_joints(job),
+        *_about_motion(job),
+    ]
     return tuple(dict.fromkeys(note for note in about if note))
 
 
@@ -56,6 +62,17 @@ def _about_plane_stress(job: Job, cases: Sequence[tuple[StationResult, ...]]) ->
         f"The plane-stress FE is itself far off for this section: at {station.name}, {name} fibre, it says "
         f"{scale.text(fibre.fe, decimals)}{scale.exponent} {job.units.stress} where the three-dimensional section has "
         f"{scale.text(fibre.best, decimals)}{scale.exponent} {job.units.stress} {where}. Read 'best', which adds that."
+    )
+
+
+def _about_unknown_width(cases: Sequence[tuple[StationResult, ...]]) -> str:
+    """Says at which stations the three-dimensional section is not known, so that nothing is concluded there."""
+    names = [station.name for station in cases[0] if station.zone is None]
+    if not names:
+        return ""
+    return (
+        f"The three-dimensional section cannot be solved on a taper between unlike hollow sections: stations "
+        f"{', '.join(names)} are not compared."
     )
 
 
@@ -245,7 +262,9 @@ def _beyond_comparison(stations: tuple[StationResult, ...], fibre: Fibre, units:
     largest, station = max(apart, key=lambda pair: pair[0])
     if largest <= abs(fibre.hand):
         return ""
-    reason = "a load enters there" if station.zone == "introduction" else "it is within one depth of the clamped end"
+    reason = {"introduction": "a load enters there", "support": "it is within one depth of the clamped end"}.get(
+        station.zone or "", "its three-dimensional section is not known"
+    )
     stress = common_scale([largest]).quantity(largest, units.stress)
     return f"Station {station.name} has a larger hand stress, {stress}, but cannot be compared: {reason}."
 

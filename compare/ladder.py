@@ -20,7 +20,7 @@ from intrados.compare.results import Budget
 from intrados.fem.toroid import FaceStress, Toroid, toroid
 from intrados.theory.ideal import bar
 from intrados.theory.load import Face
-from intrados.theory.section import Section
+from intrados.theory.section import Section, SectionError
 
 FACES: tuple[Face, Face] = ("inner", "outer")
 
@@ -30,13 +30,15 @@ class Rungs:
     """What the section alone says of one fibre (stress): the ideal bar, the step to three dimensions.
 
     ``three_d`` tells where over the width the hoop stress is largest and what acts across; None on a straight.
-    ``uncertainty`` is that of ``width``.
+    ``uncertainty`` is that of ``width``. ``is_known`` is False where the three-dimensional section cannot be solved (on
+    a taper between unlike hollow sections): its width term is then left out, and nothing can be concluded.
     """
 
     ideal: float
     width: float
     uncertainty: float
     three_d: FaceStress | None
+    is_known: bool = True
 
 
 def rungs(section: Section, R: float | None, nu: float, N: float, M: float) -> tuple[Rungs, Rungs]:
@@ -44,7 +46,10 @@ def rungs(section: Section, R: float | None, nu: float, N: float, M: float) -> t
     ideal = bar(section, R, nu).fibres(N, M)
     if R is None:
         return Rungs(ideal[0], 0.0, 0.0, None), Rungs(ideal[1], 0.0, 0.0, None)
-    solved = solved_section(section, R, nu)
+    try:
+        solved = solved_section(section, R, nu)
+    except SectionError:
+        return Rungs(ideal[0], 0.0, 0.0, None, is_known=False), Rungs(ideal[1], 0.0, 0.0, None, is_known=False)
     faces = [solved.face(face, N, M) for face in FACES]
     inner, outer = (
         Rungs(plane, face.value - plane, face.uncertainty, face) for plane, face in zip(ideal, faces, strict=True)

@@ -60,7 +60,7 @@ def station_result(case: SolvedCase, number: int) -> StationResult:
         area=section.area,
         inner=inner,
         outer=outer,
-        zone=_zone(where, inner, outer),
+        zone=_zone(where, inner, outer) if all(of.is_known for of in steps) else None,
         distance_to_load=where.distance_to_load,
         radial=radial,
         transverse=_transverse(steps),
@@ -87,7 +87,7 @@ def _fibre(case: SolvedCase, number: int, side: int, hand: float, straight: floa
     fe, best = float(case.fibres[number, side]), float(case.best[number, side])
     uncertainty = case.pair.at(case.index, face, station) + steps.uncertainty
     scale = verdict.Scale(float(case.scales[number]), float(case.scales.max()), case.job.agreement.band)
-    compared = verdict.compare(hand, best, uncertainty, scale, case.places[number].comparable)
+    compared = verdict.compare(hand, best, uncertainty, scale, case.places[number].comparable and steps.is_known)
     return Fibre(
         hand=hand,
         straight=straight,
