@@ -14,7 +14,7 @@ from intrados.compare.check import check
 from intrados.compare.demo import demo_names, demo_text
 from intrados.compare.job import parse_job
 from intrados.fem.accuracy import Solution
-from intrados.fem.cut import forces_beyond, hoop_profile, local_q, mean_motion
+from intrados.fem.cut import forces_beyond, local_q, mean_motion, stress_profile
 from intrados.fem.membrane import Elastic
 from intrados.fem.strip import Row
 from intrados.theory.load import Bearing, BodyLoad, EndLoad, FaceLoad, Load, Patch
@@ -114,7 +114,7 @@ def test_resultants_of_every_demo_are_those_of_statics(name: str) -> None:
         assert len(case.stations) >= 5
 
 
-def test_hoop_stress_over_the_depth_is_the_exact_bars() -> None:
+def test_hoop_and_radial_stress_over_the_depth_are_the_exact_bars() -> None:
     case = pulled_through_centre(rectangular_bar(30.0, 70.0, 10.0), 2000.0)
     at = stations((0, 0.35), (0, 0.6))
     eta = np.linspace(0.0, 1.0, 41)
@@ -122,12 +122,13 @@ def test_hoop_stress_over_the_depth_is_the_exact_bars() -> None:
         found = solved(case, at, degree)
         for station in at:
             N, _, M = case.resultants(0, station.share)
-            exact = RectangleBar(30.0, 70.0, 10.0).hoop(N, M, 30.0 + 40.0 * eta)
+            bar, r = RectangleBar(30.0, 70.0, 10.0), 30.0 + 40.0 * eta
+            hoop, radial = bar.hoop(N, M, r), bar.radial(N, M, r)
             strip = found.membrane.strip
             line = strip.line_at(0, station.share)
             columns = strip.columns_beside(line, 0)
-            profile = hoop_profile(found.membrane, found.cases[0].displacement, columns, line, eta)
-            assert np.abs(profile - exact).max() <= within * np.abs(exact).max()
+            profile = stress_profile(found.membrane, found.cases[0].displacement, columns, line, eta)
+            assert np.abs(profile - [hoop, radial]).max() <= within * np.abs(hoop).max()
 
 
 ROWS = [Row((0.2, 0.3, 0.0)), Row((0.0, 0.0, 0.5)), Row((0.5, 1.0, -0.5)), Row((0.1, 0.2, 0.3))]
