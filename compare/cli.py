@@ -92,13 +92,14 @@ def _read(argument: str) -> Job:
 
 def _check(options: argparse.Namespace) -> int:
     from intrados.compare.folder import FolderError, default_folder, require_usable
+    from intrados.fem.mesher import MeshError
 
     job = _read(options.job)
     folder: Path = options.out or default_folder(options.job)
     try:
         require_usable(folder)
         results = _solve_and_write(job, folder, figures=not options.no_figures)
-    except FolderError as error:
+    except (FolderError, MeshError) as error:
         print(f"intrados: {error}", file=sys.stderr)
         return WRONG
     _print_check(results, folder, as_json=options.json)

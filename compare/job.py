@@ -242,7 +242,7 @@ def _read_stations(reader: Reader, data: object, member: Member | None) -> tuple
             f"given {table.every:g}, which makes {len(defaults)} stations; must make {_MOST_STATIONS} at most",
         )
     stations = with_named(defaults, tuple(placed))
-    automatic = {station.name for station in stations} - {station.name for station in placed}
+    automatic = {station.name for station in stations if station not in placed}
     for index, item in enumerate(named):
         if item is not None and item.name in automatic:
             reader.add((*path, index, "name"), f'given "{item.name}", which is the name of another station')

@@ -37,7 +37,7 @@ def test_factors_equal_the_published_table_and_the_derived_values(row: dict[str,
 @pytest.mark.parametrize("nu", [0.0, 0.3, 0.49])
 @pytest.mark.parametrize("x", [1e-12, 1e-6, 1e-3])
 def test_a_stocky_flange_is_effective_and_bends_little(x: float, nu: float) -> None:
-    """At small L = (3 (1 - nu^2))^(1/4) sqrt(x) leaves alpha at 1 - O(L^4) and beta at 3 x: a cantilever under sigma tf/r."""
+    """Small L = (3 (1 - nu^2))^(1/4) sqrt(x) leaves alpha at 1 - O(L^4), beta at 3 x: a cantilever under sigma tf/r."""
     L = (3.0 * (1.0 - nu**2)) ** 0.25 * math.sqrt(x)
     assert 1.0 - flange.effective_share(x, nu) == pytest.approx(0.0, abs=L**4 + 1e-15)
     assert flange.bending_factor(x, nu) == pytest.approx(3.0 * x, rel=2.0 * L**4 + 1e-14)
