@@ -37,6 +37,10 @@ _ROUNDING = 1e-8
 FAINT = 1e-3
 FACES: tuple[Face, Face] = ("inner", "outer")
 
+_FIRST_PAIR = 5
+# A member so long that it would need more unknowns than this is left with the last pair: rounding, which grows with
+# its slenderness, is then what limits it, and memory would be next.
+_MOST_UNKNOWNS = 400_000
 # Fineness of each mesh (how often columns and rows are halved) and the degrees tried on it.
 LADDER = ((0, (4, 5, 6, 7, 8, 9, 10)), (1, (7, 8, 9, 10)))
 
@@ -173,7 +177,11 @@ def _meshes(
 def _degrees(
     strip: Strip, strip_mesh: Any, loadings: tuple[Loading, ...], elastic: Elastic, degrees: tuple[int, ...]
 ) -> Iterator[Solution]:
+    cells = len(strip.columns) * len(strip.rows)
     for degree in degrees:
+        # The first pair of the first mesh is always solved: there must be an answer.
+        if degree > _FIRST_PAIR and 2 * cells * degree**2 > _MOST_UNKNOWNS:
+            return
         membrane = discretise(strip, strip_mesh, elastic, degree, loadings[0].start, loadings[0].end)
         yield solve(membrane, loadings)
 

@@ -24,8 +24,8 @@ _SAME = 1e-9
 # _LEAST_GAP lets it.
 _DEEPEST_ROW = 0.5
 _RADIUS_RATIO = 2.0
-# A column is at most one depth long and turns through 20 degrees at most.
-_LONGEST_COLUMN = 1.0
+# A column is at most two depths long and turns through 20 degrees at most.
+_LONGEST_COLUMN = 2.0
 _DEGREES = 20.0
 # Rows graded for curvature and for loads are not set closer than this to another line, in depths.
 _LEAST_GAP = 0.06

@@ -208,11 +208,11 @@ def test_thick_is_the_known_error_of_the_theory(ratio: float, inner: float, oute
 
 
 def test_a_slender_bar_has_the_stress_of_a_straight_beam() -> None:
-    station = checked(bar(RECTANGLE, 1000.0, 0.0, 1000.0)).cases[0].stations[2]
+    station = checked(bar(RECTANGLE, 200.0, 0.0, 1000.0)).cases[0].stations[2]
     straight = 1000.0 * 0.5 / (0.25 / 12.0)
-    # First order in h/R.
-    assert station.inner.best == pytest.approx(straight, rel=1e-3)
-    assert station.outer.best == pytest.approx(-straight, rel=1e-3)
+    # First order in h/R: h/3R either way.
+    assert station.inner.best == pytest.approx(straight, rel=2.5e-3)
+    assert station.outer.best == pytest.approx(-straight, rel=2.5e-3)
     assert station.inner.verdict == "holds"
 
 
