@@ -16,19 +16,21 @@ from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.colors import to_rgb
 from matplotlib.figure import Figure
 from matplotlib.image import imread
-from matplotlib.patches import FancyArrowPatch, Polygon
+from matplotlib.patches import FancyArrowPatch, Polygon, Rectangle
 from matplotlib.text import Text
 from matplotlib.transforms import Bbox
 
 from intrados.compare.draw import save_all, style
 from intrados.compare.draw.along import draw_along
+from intrados.compare.draw.budget import draw_budget
 from intrados.compare.draw.member import draw_member
 from intrados.compare.draw.profile import choose, draw_profile
+from intrados.compare.draw.section import draw_section
 from intrados.compare.results import CaseResult, Results
 from intrados.compare.units import Units
 
 Draw = Callable[[Results, CaseResult], Figure]
-DRAWERS: list[Draw] = [draw_member, draw_along, draw_profile]
+DRAWERS: list[Draw] = [draw_member, draw_along, draw_profile, draw_budget]
 
 
 def large_numbers() -> Results:
@@ -261,7 +263,9 @@ def test_files_are_the_same_twice_and_the_settings_stay(tmp_path: Path) -> None:
     first, second = (save_all(results, tmp_path / name) for name in ("a", "b"))
     assert dict(mpl.rcParams) == before
     assert [path.name for path in first] == [
-        f"{figure}-{case}.svg" for case in ("lift", "proof-125") for figure in ("member", "along", "profile")
+        f"{figure}-{case}.svg"
+        for case in ("lift", "proof-125")
+        for figure in ("member", "along", "profile", "budget", "section")
     ]
     for one, other in zip(first, second, strict=True):
         assert one.read_bytes() == other.read_bytes()
@@ -276,4 +280,36 @@ def test_names_of_files_stay_apart(tmp_path: Path) -> None:
     cases = tuple(replace(case, name=name) for name in ("a b", "A/B", "../", "плюс"))
     names = [path.name for path in save_all(replace(results, cases=cases), tmp_path)]
     assert len(set(names)) == len(names) and all(re.fullmatch(r"[a-z0-9-]+\.svg", name) for name in names)
-    assert [path.name for path in save_all(results, tmp_path)] == ["member.svg", "along.svg", "profile.svg"]
+    assert [path.stem for path in save_all(results, tmp_path)] == ["member", "along", "profile", "budget"]
+
+
+def test_the_bars_of_a_station_end_where_its_difference_says() -> None:
+    results = sample.hook()
+    case = results.cases[0]
+    figure = drawn(draw_budget, results)
+    for axes, face in zip(figure.axes, ("inner", "outer"), strict=True):
+        marks = {round(line.get_xdata()[0]): line.get_ydata()[0] for line in axes.lines if line.get_gid() == "net"}
+        assert marks
+        for index, net in marks.items():
+            fibre = getattr(case.stations[index], face)
+            assert net == pytest.approx(-100.0 * fibre.difference, abs=1e-9)
+            bars = [
+                bar for bar in axes.patches if isinstance(bar, Rectangle) and abs(bar.get_x() + 0.31 - index) < 1e-9
+            ]
+            assert sum(bar.get_height() for bar in bars) == pytest.approx(net, abs=1e-9)
+
+
+def test_both_ideas_of_the_section_are_in_one_scale_with_the_inner_face_on_top() -> None:
+    results = sample.hook()
+    field = results.cases[0].section_field
+    assert field is not None
+    with style.house_style():
+        figure = draw_section(results, results.cases[0], field)
+        figure.canvas.draw()
+    plane, solid = figure.axes[:2]
+    assert plane.get_ylim() == solid.get_ylim() and plane.get_ylim()[0] > plane.get_ylim()[1]
+    assert plane.get_xlim()[0] == pytest.approx(-plane.get_xlim()[1])
+    for axes in (plane, solid):
+        assert axes.get_aspect() == 1.0
+        assert "[mm]" in axes.get_xlabel()
+    assert any("over the web" in text.get_text() for text in figure.texts)

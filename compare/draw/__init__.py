@@ -10,15 +10,17 @@ from matplotlib.figure import Figure
 
 from intrados.compare.draw import style
 from intrados.compare.draw.along import draw_along
+from intrados.compare.draw.budget import draw_budget
 from intrados.compare.draw.member import draw_member
 from intrados.compare.draw.profile import draw_profile
+from intrados.compare.draw.section import draw_section
 from intrados.compare.results import Results
 
-_DRAWERS = {"member": draw_member, "along": draw_along, "profile": draw_profile}
+_DRAWERS = {"member": draw_member, "along": draw_along, "profile": draw_profile, "budget": draw_budget}
 
 
 def draw_all(results: Results) -> Iterator[tuple[str, Figure]]:
-    """Name and figure, one after the other: member, along, profile for every case.
+    """Name and figure, one after the other: member, along, profile, budget and, on an arc, section for every case.
 
     With more than one case the name carries the case (``member-lift``). To be used within ``style.house_style()``.
     """
@@ -26,6 +28,8 @@ def draw_all(results: Results) -> Iterator[tuple[str, Figure]]:
     for case, suffix in zip(results.cases, suffixes, strict=True):
         for name, draw in _DRAWERS.items():
             yield name + suffix, draw(results, case)
+        if case.section_field is not None:
+            yield f"section{suffix}", draw_section(results, case, case.section_field)
 
 
 def save_all(results: Results, folder: Path) -> tuple[Path, ...]:

@@ -46,7 +46,7 @@ def draw_member(results: Results, case: CaseResult) -> Figure:
     stress = common_scale([_largest(case)])
     strips = _strips(case.field, stress)
     figure, axes = _canvas(results, case, strips)
-    levels = _levels(_largest(case) / 10.0**stress.power)
+    levels = style.stress_levels(_largest(case) / 10.0**stress.power)
     filled = _draw_field(axes, strips, levels)
     _draw_mesh(axes, strips, case.field.per_element)
     placer = Placer(axes)
@@ -56,7 +56,7 @@ def draw_member(results: Results, case: CaseResult) -> Figure:
     draw_loads(axes, placer, results.units, case.loads, [Path(strip.outline) for strip in strips])
     unnamed = _draw_stations(axes, placer, case)
     _draw_isolines(axes, placer, strips, levels)
-    _draw_bar(figure, axes, filled, levels, f"hoop stress [{stress.unit(results.units.stress)}], tension > 0")
+    style.draw_bar(figure, axes, filled, levels, f"hoop stress [{stress.unit(results.units.stress)}], tension > 0")
     _draw_legend(figure, results, case, unnamed)
     return figure
 
@@ -99,11 +99,6 @@ def _canvas(results: Results, case: CaseResult, strips: list[_Strip]) -> tuple[F
     return figure, axes
 
 
-def _levels(largest: float) -> Array:
-    """Round stresses, symmetric about zero, that cover the range in some twelve steps."""
-    return np.asarray(MaxNLocator(nbins=12, symmetric=True, steps=[1, 2, 2.5, 4, 5, 10]).tick_values(-largest, largest))
-
-
 def _draw_field(axes: Axes, strips: list[_Strip], levels: Array) -> ContourSet:
     """Colours between the levels; beyond the last ones (under a load) the end colours, told by the bar's tips."""
     beyond = max(float(np.nanmax(np.abs(strip.hoop))) for strip in strips) > levels[-1]
@@ -133,7 +128,7 @@ def _draw_isolines(axes: Axes, placer: Placer, strips: list[_Strip], levels: Arr
     """Solid in tension, dashed in compression, heavy at zero; each named once on a piece where there is room."""
     for strip in strips:
         masked = np.ma.masked_invalid(strip.hoop)
-        styles = [_dash(level) for level in levels]
+        styles = [style.dash(level) for level in levels]
         widths = [1.2 if level == 0 else 0.6 for level in levels]
         lines = axes.contour(
             strip.x, strip.y, masked, levels, colors=style.BLACK, linestyles=styles, linewidths=widths, zorder=2.5
@@ -150,10 +145,6 @@ def _draw_isolines(axes: Axes, placer: Placer, strips: list[_Strip], levels: Arr
             )
             text.set_bbox({"facecolor": "white", "edgecolor": "none", "alpha": 0.75, "pad": 0.6})
             placer.within(text, spots, inside)
-
-
-def _dash(level: float) -> str:
-    return "dashdot" if level == 0 else "solid" if level > 0 else "dashed"
 
 
 def _draw_stations(axes: Axes, placer: Placer, case: CaseResult) -> int:
@@ -197,19 +188,6 @@ def _cut(field: Field, station: StationResult) -> tuple[Point, Point]:
     distance[np.array(field.piece) != station.piece] = np.inf
     best = int(np.argmin(distance))
     return ends[best, 0] + off[best], ends[best, 1] + off[best]
-
-
-def _draw_bar(figure: Figure, axes: Axes, field: ContourSet, levels: Array, label: str) -> None:
-    """The colour bar, with the isolines of the drawing in it."""
-    width, height = figure.get_size_inches()
-    place = axes.get_position()
-    tall = min(place.height, 4.6 / height)
-    cax = figure.add_axes((place.x1 + 0.25 / width, place.y0 + (place.height - tall) / 2, 0.2 / width, tall))
-    bar = figure.colorbar(field, cax=cax, ticks=levels)
-    bar.set_label(label, labelpad=8)
-    bar.minorticks_off()
-    for level in levels[1:-1]:
-        cax.axhline(level, color=style.BLACK, linestyle=_dash(level), linewidth=1.2 if level == 0 else 0.6)
 
 
 def _draw_legend(figure: Figure, results: Results, case: CaseResult, unnamed: int) -> None:

@@ -12,13 +12,19 @@ from contextlib import contextmanager
 from pathlib import Path
 from typing import Any
 
+import numpy as np
 from matplotlib import style as sheets
+from matplotlib.axes import Axes
 from matplotlib.backends.backend_agg import FigureCanvasAgg
 from matplotlib.colors import LinearSegmentedColormap
+from matplotlib.contour import ContourSet
 from matplotlib.figure import Figure
+from matplotlib.ticker import MaxNLocator
+from numpy.typing import NDArray
 
 from intrados.compare.results import CaseResult, Results
 
+Array = NDArray[np.float64]
 # Keyword arguments of a matplotlib artist.
 Look = dict[str, Any]
 
@@ -69,6 +75,29 @@ def stress_colours() -> LinearSegmentedColormap:
     """Blue (compression) over near-white to orange (tension): apart for all common kinds of colour blindness."""
     stops = ["#2f5f9e", "#6f9bcb", "#b7cfe6", "#f7f7f7", "#f6cfa4", "#e69a55", "#b9621b"]
     return LinearSegmentedColormap.from_list("stress", stops, N=512)
+
+
+def stress_levels(largest: float) -> Array:
+    """Round stresses, symmetric about zero, that cover the range in some twelve steps."""
+    return np.asarray(MaxNLocator(nbins=12, symmetric=True, steps=[1, 2, 2.5, 4, 5, 10]).tick_values(-largest, largest))
+
+
+def dash(level: float) -> str:
+    """The line of an isoline: solid in tension, dashed in compression, dash-dotted at zero."""
+    return "dashdot" if level == 0 else "solid" if level > 0 else "dashed"
+
+
+def draw_bar(figure: Figure, axes: Axes, field: ContourSet, levels: Array, label: str) -> None:
+    """The colour bar of a stress field beside its axes, with the isolines of the drawing in it."""
+    width, height = figure.get_size_inches()
+    place = axes.get_position()
+    tall = min(place.height, 4.6 / height)
+    cax = figure.add_axes((place.x1 + 0.25 / width, place.y0 + (place.height - tall) / 2, 0.2 / width, tall))
+    bar = figure.colorbar(field, cax=cax, ticks=levels)
+    bar.set_label(label, labelpad=8)
+    bar.minorticks_off()
+    for level in levels[1:-1]:
+        cax.axhline(level, color=BLACK, linestyle=dash(level), linewidth=1.2 if level == 0 else 0.6)
 
 
 def wrapped(text: str, columns: int) -> str:
