@@ -62,7 +62,13 @@ def ladder_rows(job: Job, case: int) -> tuple[LadderRow, ...]:
         section, R = member.section(station.piece, station.share), member.radius(station.piece, station.share)
         N, _, M = loading.resultants(station.piece, station.share)
         places.append(
-            (station, section, R, job.hand.fibres(section, R, N, M), rungs(section, R, job.material.nu, N, M))
+            (
+                station,
+                section,
+                R,
+                job.hand.fibres(section, R, N, M),
+                rungs(section, R, job.material.nu, N, M, job.agreement.numerical),
+            )
         )
     scales = [max(abs(of.ideal + of.width) for of in steps) for *_, steps in places]
     for (station, section, R, hand, steps), scale in zip(places, scales, strict=True):

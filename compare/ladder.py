@@ -23,6 +23,8 @@ from intrados.theory.load import Face
 from intrados.theory.section import Section, SectionError
 
 FACES: tuple[Face, Face] = ("inner", "outer")
+# The uncertainty of the best estimate is the sum of the membrane's and the section's: how they share the target.
+MEMBRANE_SHARE, SECTION_SHARE = 0.6, 0.3
 
 
 @dataclass(frozen=True)
@@ -41,13 +43,16 @@ class Rungs:
     is_known: bool = True
 
 
-def rungs(section: Section, R: float | None, nu: float, N: float, M: float) -> tuple[Rungs, Rungs]:
-    """The rungs of the inner and of the outer fibre under N and M about the centroid."""
+def rungs(section: Section, R: float | None, nu: float, N: float, M: float, numerical: float) -> tuple[Rungs, Rungs]:
+    """The rungs of the inner and of the outer fibre under N and M about the centroid.
+
+    ``numerical`` is the job's target for the whole uncertainty, of which the section may take a share.
+    """
     ideal = bar(section, R, nu).fibres(N, M)
     if R is None:
         return Rungs(ideal[0], 0.0, 0.0, None), Rungs(ideal[1], 0.0, 0.0, None)
     try:
-        solved = solved_section(section, R, nu)
+        solved = solved_section(section, R, nu, SECTION_SHARE * numerical)
     except SectionError:
         return Rungs(ideal[0], 0.0, 0.0, None, is_known=False), Rungs(ideal[1], 0.0, 0.0, None, is_known=False)
     faces = [solved.face(face, N, M) for face in FACES]
@@ -58,13 +63,14 @@ def rungs(section: Section, R: float | None, nu: float, N: float, M: float) -> t
 
 
 @lru_cache(maxsize=256)
-def solved_section(section: Section, R: float, nu: float) -> Toroid:
+def solved_section(section: Section, R: float, nu: float, target: float) -> Toroid:
     """The three-dimensional bar of a section, solved once for all stations and cases that share it.
 
-    On one BLAS thread, as the membrane is (see accuracy.refine).
+    ``target``: its uncertainty as a share of the larger face's stress. On one BLAS thread, as the membrane is (see
+    accuracy.refine).
     """
     with threadpool_limits(limits=1, user_api="blas"):
-        return toroid(section, R, nu)
+        return toroid(section, R, nu, target)
 
 
 def budget(hand: float, fe: float, of: Rungs) -> Budget:

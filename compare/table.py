@@ -410,7 +410,9 @@ def _solution(results: Results) -> list[str]:
     mesh = results.mesh
     degrees = ", ".join(str(level.degree) for level in mesh.levels)
     worst = mesh.levels[-1].worst if mesh.levels else None
-    reached = "" if worst is None else f"; largest uncertainty {100 * worst:.2g} % of the station's larger stress"
+    reached = (
+        "" if worst is None else f"; largest uncertainty of the FE {100 * worst:.2g} % of the station's larger stress"
+    )
     sentences = [
         f"Mesh: {mesh.cells} cells, {mesh.dofs} unknowns, degrees {degrees}{reached} "
         f"(target {100 * results.numerical:g} %)."

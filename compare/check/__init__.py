@@ -16,6 +16,7 @@ from intrados.compare.check.section_field import section_field
 from intrados.compare.check.station import station_result
 from intrados.compare.conclusion import governing, notes, peak
 from intrados.compare.job import Job
+from intrados.compare.ladder import MEMBRANE_SHARE
 from intrados.compare.results import CaseResult, Level, MeshSummary, Results, SectionSummary, StationResult
 from intrados.compare.zone import place
 from intrados.fem.accuracy import Refined, refine
@@ -40,7 +41,7 @@ def check(job: Job) -> Checked:
         job.stations,
         tuple(tuple(where.comparable for where in row) for row in places),
         Elastic(job.material.E, job.material.nu),
-        job.agreement.numerical,
+        MEMBRANE_SHARE * job.agreement.numerical,
     )
     cases = [SolvedCase(job, solved.pair, index, places[index]) for index in range(len(job.loadings))]
     read_out = tuple(_result(case) for case in cases)

@@ -56,11 +56,12 @@ class SolvedCase:
     def rungs(self) -> tuple[tuple[Rungs, Rungs], ...]:
         """What the section alone says of both fibres of each station under its N and M."""
         member, nu = self.loading.member, self.job.material.nu
+        numerical = self.job.agreement.numerical
         found = []
         for station in self.job.stations:
             N, _, M = self.loading.resultants(station.piece, station.share)
             section, R = member.section(station.piece, station.share), member.radius(station.piece, station.share)
-            found.append(rungs(section, R, nu, N, M))
+            found.append(rungs(section, R, nu, N, M, numerical))
         return tuple(found)
 
     @cached_property

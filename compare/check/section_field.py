@@ -5,7 +5,7 @@ from __future__ import annotations
 import numpy as np
 
 from intrados.compare.check.case import SolvedCase
-from intrados.compare.ladder import solved_section
+from intrados.compare.ladder import SECTION_SHARE, solved_section
 from intrados.compare.results import Governing, SectionField
 from intrados.theory.ideal import bar
 
@@ -22,7 +22,7 @@ def section_field(case: SolvedCase, governing: Governing | None) -> SectionField
     if R is None:
         return None
     N, _, M = case.loading.resultants(station.piece, station.share)
-    over = solved_section(section, R, nu).map
+    over = solved_section(section, R, nu, SECTION_SHARE * case.job.agreement.numerical).map
     hoop = N * over.stress[0, 0] + M * over.stress[0, 1]
     x = np.linspace(0.0, section.depth, _DEPTHS)
     return SectionField(

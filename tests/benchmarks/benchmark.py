@@ -3,6 +3,7 @@
 1. Time to a fibre stress right to 0.1 % and to 0.001 %, against plain scikit-fem with second-order triangles.
 2. A whole `check` of each demo without figures, against imports, one mesh and one factorisation of its final system.
 3. `hand` of each demo, against importing numpy and pydantic: with a first model, and bare, when pydantic loads little.
+4. The three-dimensional sections of each demo, each solved once, against the membrane FE of the member.
 
 Ratios, not seconds, are what can be compared; each is of medians taken in turn. One BLAS thread throughout.
 """
@@ -26,7 +27,10 @@ from pathlib import Path
 import numpy as np
 from plain import solve_plainly
 
-from intrados.compare.demo import demo_names
+from intrados.compare.demo import demo_names, demo_text
+from intrados.compare.job import parse_job
+from intrados.compare.ladder import MEMBRANE_SHARE, SECTION_SHARE, solved_section
+from intrados.compare.zone import place
 from intrados.fem.accuracy import FACES, refine
 from intrados.fem.membrane import Elastic
 from intrados.theory.load import EndLoad
@@ -143,6 +147,37 @@ def hand_only(name: str) -> None:
     print(f"   {name}: {whole:.2f} s against {high:.2f} s, {whole / high:.2f} times; bare, {whole / low:.2f} times")
 
 
+def three_dimensions(name: str) -> None:
+    """Print the fourth comparison for a demo: its sections in three dimensions against the membrane of the member."""
+    job = parse_job(demo_text(name).encode(), name)
+    elastic = Elastic(job.material.E, job.material.nu)
+    compared = tuple(
+        tuple(place(loading, station.piece, station.share).comparable for station in job.stations)
+        for loading in job.loadings
+    )
+    member = job.member
+    sections = {
+        (member.section(station.piece, station.share), R)
+        for station in job.stations
+        if (R := member.radius(station.piece, station.share)) is not None
+    }
+
+    def membrane() -> None:
+        refine(job.loadings, job.stations, compared, elastic, MEMBRANE_SHARE * job.agreement.numerical)
+
+    def toroids() -> None:
+        solved_section.cache_clear()
+        for section, R in sections:
+            solved_section(section, R, elastic.nu, SECTION_SHARE * job.agreement.numerical)
+
+    # Once before, for the imports and tables that both share.
+    membrane()
+    toroids()
+    flat, solid = (statistics.median(seconds(work) for _ in range(RUNS)) for work in (membrane, toroids))
+    times = f"{1e3 * solid:.0f} ms against {1e3 * flat:.0f} ms, {solid / flat:.2f} times"
+    print(f"   {name}: {len(sections)} sections, {times}")
+
+
 def main() -> None:
     """Run all comparisons."""
     # scikit-fem warns of array layouts at every plain mesh.
@@ -154,6 +189,9 @@ def main() -> None:
     print("3. `intrados hand`, against importing numpy and pydantic")
     for name in demo_names():
         hand_only(name)
+    print("4. The sections in three dimensions, against the membrane of the member")
+    for name in demo_names():
+        three_dimensions(name)
 
 
 if __name__ == "__main__":
