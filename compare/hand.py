@@ -43,7 +43,7 @@ def hand_rows(job: Job, case: int) -> tuple[HandRow, ...]:
                 outer_hand=outer,
                 inner_straight=inner_straight,
                 outer_straight=outer_straight,
-                radial_max=None if R is None else _largest_radial(section, R, N, M),
+                radial_max=None if R is None else largest_radial(section, R, N, M),
             )
         )
     return tuple(rows)
@@ -82,8 +82,8 @@ def ladder_rows(job: Job, case: int) -> tuple[LadderRow, ...]:
     return tuple(found)
 
 
-def _largest_radial(section: Section, R: float, N: float, M: float) -> float:
-    """The radial stress of largest magnitude over the depth."""
+def largest_radial(section: Section, R: float, N: float, M: float) -> float:
+    """The radial stress of largest magnitude over the depth that hand theory gives N and M; > 0 tension."""
     of_n, of_m = _unit_radials(section, R)
     radial = N * of_n + M * of_m
     return float(radial[np.argmax(np.abs(radial))])

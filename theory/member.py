@@ -179,7 +179,12 @@ class Member:
 
     def _length_to(self, piece: int, share: float) -> float:
         """Length of a piece's centroid line from its start."""
-        nodes, weights = unit_gauss(_LENGTH_POINTS)
+        first, second = self.pieces[piece].sections
+        if first == second:
+            # Nothing changes along it: one point tells the length.
+            nodes, weights = np.array([0.0]), np.array([1.0])
+        else:
+            nodes, weights = unit_gauss(_LENGTH_POINTS)
         shares = share * nodes
         along, across = self.velocity(piece, shares, self.centroid(piece, shares), self.centroid_rate(piece, shares))
         return float(share * (weights @ np.hypot(along, across)))

@@ -10,6 +10,7 @@ from __future__ import annotations
 
 import itertools
 from dataclasses import dataclass
+from functools import lru_cache
 
 import numpy as np
 
@@ -33,6 +34,7 @@ class _Slice:
     shearing: float
 
 
+@lru_cache(maxsize=256)
 def shear_factor(section: Section) -> float:
     """k = A/I^2 int Q^2/t dx, the shear factor of a straight bar: 6/5 for a rectangle, 10/9 for a circle.
 

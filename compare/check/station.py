@@ -8,6 +8,7 @@ import numpy as np
 
 from intrados.compare import verdict
 from intrados.compare.check.case import SolvedCase
+from intrados.compare.hand import largest_radial
 from intrados.compare.ladder import Rungs, budget, largest_term
 from intrados.compare.results import Fibre, Profile, Radial, Resultants, StationResult, Transverse, Zone
 from intrados.compare.zone import Place
@@ -146,7 +147,7 @@ def _profiles(case: SolvedCase, number: int, N: float, M: float) -> tuple[Profil
     if R is None:
         return profile, None
     radial = Radial(
-        hand=_largest(winkler.radial(section, R, N, M, x)),
+        hand=largest_radial(section, R, N, M),
         ideal=_largest(exact.radial(N, M, x)),
         fe=_largest(across),
         depth=float(x[np.abs(across).argmax()]),
