@@ -17,7 +17,7 @@ import itertools
 import math
 from collections.abc import Callable
 from dataclasses import dataclass
-from functools import cached_property
+from functools import cached_property, lru_cache
 
 import numpy as np
 
@@ -233,14 +233,7 @@ class Section:
         Raises ValueError where the inner face reaches the centre of curvature, to a billionth of the depth.
         Source: definitions above; the stable form of e is derived in the module's header.
         """
-        if not R - self.centroid > _COINCIDENT * self.depth:
-            raise ValueError(f"inner face at radius {R - self.centroid:g} reaches the centre of curvature")
-        x, weights = self.quadrature(R)
-        z = x - self.centroid
-        area = self.area
-        K2 = float(weights @ (z * z / (R + z)))
-        e = K2 * R / (area * R + K2)
-        return Ring(R=R, area=area, K2=K2, J=area / R + K2 / R**2, rn=R / (1.0 + K2 / (area * R)), e=e)
+        return _ring(self, R)
 
     def integral_to(self, x: Array, integrand: Callable[[Array], Array], R: float = math.inf) -> Array:
         """int of ``integrand`` dA from the inner face to each ``x``; R as in ``quadrature``, for terms in 1/r."""
@@ -252,6 +245,18 @@ class Section:
                 points, weights = _layer_rule(layer, min(float(x[index]), layer.outer), pole)
                 total[index] += float(weights @ integrand(points))
         return total
+
+
+@lru_cache(maxsize=1024)
+def _ring(section: Section, R: float) -> Ring:
+    if not R - section.centroid > _COINCIDENT * section.depth:
+        raise ValueError(f"inner face at radius {R - section.centroid:g} reaches the centre of curvature")
+    x, weights = section.quadrature(R)
+    z = x - section.centroid
+    area = section.area
+    K2 = float(weights @ (z * z / (R + z)))
+    e = K2 * R / (area * R + K2)
+    return Ring(R=R, area=area, K2=K2, J=area / R + K2 / R**2, rn=R / (1.0 + K2 / (area * R)), e=e)
 
 
 def _layer_rule(layer: Layer, outer: float, pole: float | None) -> tuple[Array, Array]:
