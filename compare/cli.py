@@ -3,11 +3,13 @@
 from __future__ import annotations
 
 import argparse
+import io
+import os
 import sys
-from collections.abc import Sequence
-from contextlib import nullcontext
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager, nullcontext
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, TextIO
 
 from intrados.compare.demo import demo_names, demo_text, demo_title
 from intrados.compare.job import Job, parse_job, read_job
@@ -126,15 +128,30 @@ def _solve_and_write(job: Job, folder: Path, figures: bool) -> Results:
     return checked.results
 
 
+@contextmanager
+def _output() -> Iterator[TextIO]:
+    """Standard output; that its reader leaves early, as ``head`` does, is no error."""
+    try:
+        yield sys.stdout
+        sys.stdout.flush()
+    except BrokenPipeError:
+        # What is still buffered must go somewhere when the interpreter ends.
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
+
+
 def _print_check(results: Results, folder: Path, as_json: bool) -> None:
     from intrados.compare.record import to_json
     from intrados.compare.table import check_table, show
 
-    if as_json:
-        sys.stdout.write(to_json(results))
-        return
-    show(check_table(results), sys.stdout)
-    print(f"\nWritten to {folder}")
+    with _output() as stream:
+        if as_json:
+            # The bytes of the file, whatever the terminal's encoding.
+            if isinstance(stream, io.TextIOWrapper):
+                stream.reconfigure(encoding="utf-8", newline="\n")
+            stream.write(to_json(results))
+        else:
+            show(check_table(results), stream)
+            print(f"\nWritten to {folder}", file=stream)
 
 
 def _hand(options: argparse.Namespace) -> int:
@@ -142,19 +159,21 @@ def _hand(options: argparse.Namespace) -> int:
     from intrados.compare.table import hand_table, ladder_table, show
 
     job = _read(options.job)
-    for index, case in enumerate(job.cases):
-        title = f"{job.title}, case {case.name}" if len(job.cases) > 1 else job.title
-        if options.ladder:
-            show(ladder_table(title, job.units, ladder_rows(job, index), job.agreement.band), sys.stdout)
-        else:
-            show(hand_table(title, job.units, hand_rows(job, index)), sys.stdout)
+    with _output() as stream:
+        for index, case in enumerate(job.cases):
+            title = f"{job.title}, case {case.name}" if len(job.cases) > 1 else job.title
+            if options.ladder:
+                show(ladder_table(title, job.units, ladder_rows(job, index), job.agreement.band), stream)
+            else:
+                show(hand_table(title, job.units, hand_rows(job, index)), stream)
     return RAN
 
 
 def _demo(options: argparse.Namespace) -> int:
     if options.name is None:
-        for name in demo_names():
-            print(f"{name:16} {demo_title(name)}")
+        with _output() as stream:
+            for name in demo_names():
+                print(f"{name:16} {demo_title(name)}", file=stream)
         return RAN
     text = demo_text(options.name)
     path = Path(f"{options.name}.toml")

@@ -30,15 +30,20 @@ def require_usable(folder: Path) -> None:
 
     An existing folder may be replaced only if it is empty or holds a results.json of this program.
     """
-    if folder.exists() and not folder.is_dir():
-        raise FolderError(f"--out {folder}: is a file; give a folder")
-    if folder.is_dir() and any(folder.iterdir()) and not _is_ours(folder):
-        raise FolderError(
-            f"--out {folder}: exists and holds no {RESULTS} of this program, so it is not replaced; give another folder"
-        )
     try:
-        with tempfile.TemporaryDirectory(dir=_parent(folder), prefix=".intrados-"):
+        if folder.exists() and not folder.is_dir():
+            raise FolderError(f"--out {folder}: is a file; give a folder")
+        if folder.is_dir() and folder.samefile(Path.cwd()):
+            raise FolderError(f"--out {folder}: is the current folder, which cannot be replaced; give another folder")
+        if folder.is_dir() and any(folder.iterdir()) and not _is_ours(folder):
+            raise FolderError(
+                f"--out {folder}: exists and holds no {RESULTS} of this program, so it is not replaced; "
+                "give another folder"
+            )
+        with tempfile.TemporaryDirectory(dir=_foothold(folder), prefix=".intrados-"):
             pass
+    except FolderError:
+        raise
     except OSError as error:
         raise FolderError(f"--out {folder}: cannot be written ({error.strerror})") from error
 
@@ -52,7 +57,7 @@ def write_folder(folder: Path, checked: Checked, figures: bool) -> None:
 
     results = checked.results
     try:
-        with tempfile.TemporaryDirectory(dir=_parent(folder), prefix=".intrados-") as scratch:
+        with tempfile.TemporaryDirectory(dir=_foothold(folder), prefix=".intrados-") as scratch:
             made = Path(scratch) / "new"
             made.mkdir()
             _write_text(made / RESULTS, record.to_json(results))
@@ -62,18 +67,27 @@ def write_folder(folder: Path, checked: Checked, figures: bool) -> None:
                 from intrados.compare.draw import save_all
 
                 save_all(results, made)
-            if folder.exists():
-                folder.rename(Path(scratch) / "old")
-            made.rename(folder)
+            _put(made, folder, Path(scratch) / "old")
     except OSError as error:
         raise FolderError(f"--out {folder}: cannot be written ({error.strerror})") from error
 
 
-def _parent(folder: Path) -> Path:
-    """The nearest existing folder above, made down to the last if need be."""
-    parent = folder.absolute().parent
-    parent.mkdir(parents=True, exist_ok=True)
-    return parent
+def _put(made: Path, folder: Path, old: Path) -> None:
+    """Put what was made in the place of the folder, or leave the folder as it is."""
+    folder.absolute().parent.mkdir(parents=True, exist_ok=True)
+    try:
+        if folder.exists():
+            folder.rename(old)
+        made.rename(folder)
+    except BaseException:
+        if old.exists() and not folder.exists():
+            old.rename(folder)
+        raise
+
+
+def _foothold(folder: Path) -> Path:
+    """The nearest folder above that exists: nothing is made in it before the results are whole."""
+    return next(above for above in folder.absolute().parents if above.exists())
 
 
 def _is_ours(folder: Path) -> bool:

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import hashlib
+import re
 import tomllib
 from collections.abc import Mapping
 from dataclasses import dataclass
@@ -10,10 +11,10 @@ from pathlib import Path as FilePath
 
 from intrados.compare import schema
 from intrados.compare.loads import read_loads, scaled
-from intrados.compare.location import read_place
 from intrados.compare.mistake import JobMistakes, choices, located, nearest, shown
 from intrados.compare.reader import Reader
 from intrados.compare.sections import read_sections
+from intrados.compare.stations import read_stations, settle
 from intrados.compare.toml_lines import Path
 from intrados.compare.units import UNIT_SETS, Units
 from intrados.theory.hand import HandTheory
@@ -22,10 +23,12 @@ from intrados.theory.member import Arc, Member, Piece, Straight
 from intrados.theory.outline import faults
 from intrados.theory.section import Section
 from intrados.theory.statics import Loading, Support, loading
-from intrados.theory.station import Station, default_stations, named_station, with_named
+from intrados.theory.station import Station
 
 _TABLES = ("title", "units", "material", "section", "member", "ends", "load", "case", "stations", "agreement", "theory")
-_MOST_STATIONS = 500
+# A straight longer than so many depths is a slip of units.
+_MOST_DEPTHS = 500
+_CONTROL = re.compile(r"[\x00-\x1f\x7f-\x9f]")
 
 
 @dataclass(frozen=True)
@@ -75,6 +78,9 @@ def parse_job(content: bytes, source: str) -> Job:
         data = tomllib.loads(text)
     except tomllib.TOMLDecodeError as error:
         raise JobMistakes((_not_toml(source, text, str(error)),)) from error
+    except (ValueError, RecursionError) as error:
+        said = "a number has thousands of digits, or brackets are nested hundreds deep"
+        raise JobMistakes((f"{source}:1: job: cannot be read: {said}",)) from error
     reader = Reader()
     job = _read(reader, data, hashlib.sha256(content).hexdigest())
     if reader.mistakes or job is None:
@@ -92,33 +98,34 @@ def _not_toml(source: str, text: str, said: str) -> str:
 
 
 def _read(reader: Reader, data: Mapping[str, object], sha256: str) -> Job | None:
-    for key in data:
-        if key not in _TABLES:
-            reader.add((key,), f"unknown key; {nearest(key, _TABLES)}")
+    misspelt = reader.unknown(data, _TABLES, ())
     title = data.get("title", "Untitled")
-    if not isinstance(title, str) or not title.strip():
-        reader.add(("title",), f"given {shown(title)}; must be a text in quotes")
+    if not isinstance(title, str) or not title.strip() or _CONTROL.search(title):
+        reader.add(("title",), f"given {shown(title)}; must be a text in quotes, on one line")
         title = ""
     unit_set = data.get("units", "mm-N-MPa")
     if not isinstance(unit_set, str) or unit_set not in UNIT_SETS:
         reader.add(("units",), f"given {shown(unit_set)}; must be one of {choices(UNIT_SETS)}")
         unit_set = "mm-N-MPa"
-    material = reader.table(schema.Material, _required(reader, data, "material"), ("material",))
+    given = {key: _required(reader, data, key, misspelt) for key in ("material", "section", "member", "ends")}
+    material = None
+    if given["material"] is not None:
+        material = reader.table(schema.Material, given["material"], ("material",))
     agreement = reader.table(schema.Agreement, data.get("agreement", {}), ("agreement",))
     theory = reader.table(schema.Theory, data.get("theory", {}), ("theory",))
-    sections = read_sections(reader, _required(reader, data, "section"))
-    member = _read_member(reader, _required(reader, data, "member"), sections)
-    ends = _read_ends(reader, _required(reader, data, "ends"))
-    loads = read_loads(reader, data.get("load", []), member, ends)
+    sections = read_sections(reader, given["section"])
+    member = _read_member(reader, given["member"], sections)
+    ends = _read_ends(reader, given["ends"])
+    loads = read_loads(reader, data.get("load", None if "load" in misspelt else []), member, ends)
     cases = _read_cases(reader, data.get("case"), loads)
-    stations = _read_stations(reader, data.get("stations", {}), member)
-    if member is None or ends is None or loads is None or cases is None:
+    asked = read_stations(reader, data.get("stations", {}), member)
+    if sections is None or member is None or ends is None or loads is None or cases is None:
         return None
     loadings = _loadings(reader, member, ends, loads, cases)
+    stations = settle(reader, member, asked, loadings)
     if reader.mistakes or material is None or agreement is None or theory is None:
         return None
     sound = {name: section for name, section in sections.items() if section is not None}
-    given = tuple(load for _, load in loads)
     return Job(
         title,
         unit_set,
@@ -126,7 +133,7 @@ def _read(reader: Reader, data: Mapping[str, object], sha256: str) -> Job | None
         material,
         sound,
         member,
-        given,
+        tuple(load for _, load in loads),
         cases,
         loadings,
         stations,
@@ -136,14 +143,14 @@ def _read(reader: Reader, data: Mapping[str, object], sha256: str) -> Job | None
     )
 
 
-def _required(reader: Reader, data: Mapping[str, object], key: str) -> object:
-    if key not in data:
+def _required(reader: Reader, data: Mapping[str, object], key: str, misspelt: set[str]) -> object:
+    """What the key holds; None where it is missing, which is noted unless it is there under a misspelt name."""
+    if key not in data and key not in misspelt:
         reader.add((key,), f"missing; a job needs [{key}]")
-        return None
-    return data[key]
+    return data.get(key)
 
 
-def _read_member(reader: Reader, data: object, sections: Mapping[str, Section | None]) -> Member | None:
+def _read_member(reader: Reader, data: object, sections: Mapping[str, Section | None] | None) -> Member | None:
     if data is None:
         return None
     head = reader.table(schema.Member, data, ("member",))
@@ -164,7 +171,9 @@ def _with_given(table: Mapping[str, object], key: str, text: str) -> str:
     return f"given {shown(table[key])}; {text}"
 
 
-def _read_piece(reader: Reader, data: object, path: Path, sections: Mapping[str, Section | None]) -> Piece | None:
+def _read_piece(
+    reader: Reader, data: object, path: Path, sections: Mapping[str, Section | None] | None
+) -> Piece | None:
     if isinstance(data, Mapping) and ("straight" in data) == ("arc" in data):
         reader.add(path, "must have either straight = its length, or arc = its radius and sweep = its angle")
         return None
@@ -173,20 +182,25 @@ def _read_piece(reader: Reader, data: object, path: Path, sections: Mapping[str,
     table = reader.table(schema.ArcPiece, data, path) if is_arc else reader.table(schema.StraightPiece, data, path)
     if table is None:
         return None
+    if isinstance(table, schema.ArcPiece) and table.sweep == 0.0:
+        reader.add((*path, "sweep"), "given 0; must not be zero: > 0 turns left, < 0 right")
+    if sections is None:
+        return None
     names = [table.section] * 2 if isinstance(table.section, str) else table.section
     for name in dict.fromkeys(names):
         if name not in sections:
-            reader.add(
-                (*path, "section"), f'given "{name}", which is no section of this job; {nearest(name, sections)}'
-            )
+            said = f"given {shown(name)}, which is no section of this job; {nearest(name, sections)}"
+            reader.add((*path, "section"), said)
     first, second = (sections.get(name) for name in names)
-    if isinstance(table, schema.ArcPiece) and table.sweep == 0.0:
-        reader.add((*path, "sweep"), "given 0; must not be zero: > 0 turns left, < 0 right")
-        return None
     if first is None or second is None:
         return None
     if isinstance(table, schema.ArcPiece):
-        return Arc(table.arc, table.sweep, (first, second))
+        return None if table.sweep == 0.0 else Arc(table.arc, table.sweep, (first, second))
+    depth = min(first.depth, second.depth)
+    if table.straight > _MOST_DEPTHS * depth:
+        given = f"given {shown(table.straight)}, with a depth of {shown(depth)}"
+        reader.add((*path, "straight"), f"{given}; must be {_MOST_DEPTHS} depths at most: are both in one unit?")
+        return None
     return Straight(table.straight, (first, second))
 
 
@@ -206,6 +220,8 @@ def _read_ends(reader: Reader, data: object) -> tuple[Support, Support] | None:
 def _read_cases(reader: Reader, data: object, loads: list[tuple[Path, Load]] | None) -> tuple[Case, ...] | None:
     if data is None:
         return (Case("", {}),)
+    if data == []:
+        reader.add(("case",), "given no case; must hold one at least, or be left out")
     reader.unique_names(data, ("case",))
     tables = reader.each(data, ("case",), lambda item, path: reader.table(schema.Case, item, path))
     if any(table is None for table in tables) or not tables:
@@ -220,33 +236,6 @@ def _read_cases(reader: Reader, data: object, loads: list[tuple[Path, Load]] | N
                 reader.add(("case", index, "factors", name), f"no load has this name; {nearest(name, names)}")
                 known = False
     return tuple(Case(table.name, table.factors) for table in tables) if known else None
-
-
-def _read_stations(reader: Reader, data: object, member: Member | None) -> tuple[Station, ...]:
-    table = reader.table(schema.Stations, data, ("stations",))
-    named_data = data.get("named", []) if isinstance(data, Mapping) else []
-    path: Path = ("stations", "named")
-    named = reader.each(named_data, path, lambda item, at: reader.table(schema.NamedStation, item, at))
-    reader.unique_names(named_data, path)
-    if member is None or table is None:
-        return ()
-    placed = []
-    for index, item in enumerate(named):
-        at = None if item is None else read_place(reader, item, member, (*path, index))
-        if at is not None:
-            placed.append(named_station(member, item.name, *at))
-    defaults = default_stations(member, table.every)
-    if len(defaults) > _MOST_STATIONS:
-        reader.add(
-            ("stations", "every"),
-            f"given {table.every:g}, which makes {len(defaults)} stations; must make {_MOST_STATIONS} at most",
-        )
-    stations = with_named(defaults, tuple(placed))
-    automatic = {station.name for station in stations if station not in placed}
-    for index, item in enumerate(named):
-        if item is not None and item.name in automatic:
-            reader.add((*path, index, "name"), f'given "{item.name}", which is the name of another station')
-    return stations
 
 
 def _loadings(

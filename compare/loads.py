@@ -8,7 +8,7 @@ from dataclasses import replace
 from intrados.compare import schema
 from intrados.compare.location import read_place
 from intrados.compare.mistake import choices, shown
-from intrados.compare.reader import Reader
+from intrados.compare.reader import Reader, keys
 from intrados.compare.toml_lines import Path
 from intrados.theory.load import Bearing, BodyLoad, EndLoad, FaceLoad, Load, LoadError, Patch
 from intrados.theory.member import Member
@@ -18,6 +18,9 @@ from intrados.theory.statics import Support
 _ENDS = ("start", "end")
 _FACES = ("inner", "outer", "centroid")
 _ENTERS = ("patch", "bearing")
+_PLACED_KEYS = tuple(
+    dict.fromkeys(key for model in (schema.PatchLoad, schema.BearingLoad, schema.BodyLoad) for key in keys(model))
+)
 
 
 def read_loads(
@@ -27,6 +30,8 @@ def read_loads(
 
     Where ``member`` or ``ends`` is None, what hangs on it is not looked at.
     """
+    if data is None:
+        return None
     if data == []:
         reader.add(("load",), "missing; a job needs at least one [[load]]")
         return None
@@ -66,15 +71,19 @@ def _read_table(reader: Reader, data: object, path: Path) -> AnyTable | None:
         for key in refused:
             reader.add((*path, key), "does not go with a load on an end, which enters as the exact distribution there")
         return reader.table(schema.EndLoad, {key: data[key] for key in data if key not in refused}, path)
-    problems = len(reader.mistakes)
     face, enters = data.get("face"), data.get("enters")
-    for key, value, allowed in (("face", face, _FACES), ("enters", enters, _ENTERS)):
-        if value not in allowed:
+    asked = (("face", face, _FACES), ("enters", enters, _ENTERS))
+    wrong = [(key, value, allowed) for key, value, allowed in asked if value not in allowed]
+    if wrong:
+        misspelt = reader.unknown(data, _PLACED_KEYS, path)
+        for key, value, allowed in wrong:
             said = "missing" if value is None else f"given {shown(value)}"
-            reader.add((*path, key), f"{said}; a load at a piece needs one of {choices(allowed)}")
-    if len(reader.mistakes) > problems:
+            if value is not None or key not in misspelt:
+                reader.add((*path, key), f"{said}; a load at a piece needs one of {choices(allowed)}")
         # What goes with every load at a piece can be looked at all the same.
-        reader.table(schema.PlacedLoad, {key: data[key] for key in ("name", "at", "force") if key in data}, path)
+        common = ("name", "at", "force")
+        if not misspelt.intersection(common):
+            reader.table(schema.PlacedLoad, {key: data[key] for key in common if key in data}, path)
         return None
     if face == "centroid":
         return reader.table(schema.BodyLoad, data, path)

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from intrados.compare import schema
+from intrados.compare.mistake import shown
 from intrados.compare.reader import Reader
 from intrados.compare.toml_lines import Path
 from intrados.theory.member import Arc, Member
@@ -28,6 +29,6 @@ def read_place(reader: Reader, at: schema.At, member: Member, path: Path) -> tup
         return None
     extent = member.extent(piece)
     if value > extent * (1.0 + 1e-12):
-        reader.add((*path, key), f"given {value:g}; is off the piece: must be from 0 to {extent:g}")
+        reader.add((*path, key), f"given {shown(value)}; is off the piece: must be from 0 to {shown(extent)}")
         return None
     return piece, value

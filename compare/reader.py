@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable, Mapping
+from collections.abc import Callable, Iterable, Mapping
 from typing import Any, TypeVar
 
 from pydantic import ValidationError
 
-from intrados.compare.mistake import Mistake, choices, nearest, shown
+from intrados.compare.mistake import Mistake, choices, meant, nearest, shown
 from intrados.compare.schema import Table
 from intrados.compare.toml_lines import Path
 
@@ -40,31 +40,42 @@ class Reader:
         if not isinstance(data, Mapping):
             self.add(path, f"given {shown(data)}; must be a table")
             return None
-        known = {field.alias or name for name, field in model.model_fields.items()}
-        for key in data:
-            if key not in known:
-                self.add((*path, key), f"unknown key; {nearest(key, known)}")
+        known = keys(model)
+        misspelt = self.unknown(data, known, path)
         try:
             return model.model_validate({key: value for key, value in data.items() if key in known})
         except ValidationError as error:
-            self._note(error, model, path)
+            self._note(error, model, path, {(*path, key) for key in misspelt})
             return None
 
-    def _note(self, error: ValidationError, model: type[Table], path: Path) -> None:
-        said: set[Path] = set()
-        for problem in error.errors(include_url=False):
-            # A union reports each of its members under the member's name, which is no key of the file.
-            place = tuple(part for part in problem["loc"] if isinstance(part, int) or "[" not in part)
-            place = tuple(part for part in place if part not in ("str", "constrained-str"))
-            where = (*path, *place)
-            if where not in said:
-                said.add(where)
+    def unknown(self, data: Mapping[str, object], known: Iterable[str], path: Path) -> set[str]:
+        """Note every key that is not known; what is returned are the known ones that seem to be meant by them.
+
+        A key that is missing because it is misspelt is not to be noted as missing, too.
+        """
+        known = list(known)
+        strange = [key for key in data if key not in known]
+        for key in strange:
+            self.add((*path, key), f"unknown key; {nearest(key, known)}")
+        return {name for key in strange if (name := meant(key, known)) is not None}
+
+    def _note(self, error: ValidationError, model: type[Table], path: Path, misspelt: set[Path]) -> None:
+        problems = error.errors(include_url=False)
+        for problem in problems:
+            if problem["type"] == "extra_forbidden":
+                *above, key = problem["loc"]
+                inside = (*path, *above)
+                found = self.unknown({str(key): None}, keys(_below(model, above)), inside)
+                misspelt |= {(*inside, name) for name in found}
+        for problem in problems:
+            where = (*path, *problem["loc"])
+            if problem["type"] != "extra_forbidden" and not (problem["type"] == "missing" and where in misspelt):
                 self.add(where, _sentence(problem))
 
     def each(self, data: object, path: Path, read: Callable[[object, Path], Any]) -> list[Any]:
         """What ``read`` makes of each element of an array of tables."""
         if not isinstance(data, list):
-            self.add(path, f"given {shown(data)}; must be an array, written [[{path[-1]}]]")
+            self.add(path, f"given {shown(data)}; must be an array, written [[{'.'.join(map(str, path))}]]")
             return []
         return [read(item, (*path, index)) for index, item in enumerate(data)]
 
@@ -75,8 +86,22 @@ class Reader:
             name = table.get("name") if isinstance(table, Mapping) else None
             if isinstance(name, str):
                 if name in taken:
-                    self.add((*path, index, "name"), f'given "{name}", which is taken already; names must differ')
+                    self.add((*path, index, "name"), f"given {shown(name)}, which is taken already; names must differ")
                 taken.add(name)
+
+
+def keys(model: type[Table]) -> list[str]:
+    """The keys of a table as a file has them."""
+    return [field.alias or name for name, field in model.model_fields.items()]
+
+
+def _below(model: type[Table], place: Iterable[str | int]) -> type[Table]:
+    """The model of the table at a place within another."""
+    for part in place:
+        inner = model.model_fields[str(part)].annotation
+        assert isinstance(inner, type) and issubclass(inner, Table)
+        model = inner
+    return model
 
 
 def _sentence(problem: Mapping[str, Any]) -> str:
@@ -97,7 +122,8 @@ def _sentence(problem: Mapping[str, Any]) -> str:
     if kind in ("too_short", "too_long"):
         bound = context.get("min_length", context.get("max_length"))
         which = "at least" if kind == "too_short" else "at most"
-        return f"given {context['actual_length']} values; must be {which} {bound}"
-    if kind in ("string_too_short", "string_too_long"):
-        return f"{said} a text of 1 to 60 characters"
+        count = context["actual_length"]
+        return f"given {count} value{'' if count == 1 else 's'}; must be {which} {bound}"
+    if kind in ("string_too_short", "string_too_long", "string_pattern_mismatch"):
+        return f"{said} a text of 1 to 60 characters on one line"
     return f"given {shown(given)}; {problem['msg']}"

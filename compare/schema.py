@@ -7,7 +7,8 @@ from __future__ import annotations
 
 from typing import Annotated, Any, Literal
 
-from pydantic import BaseModel, ConfigDict, Field
+from pydantic import BaseModel, ConfigDict, Field, PlainValidator
+from pydantic_core import PydanticCustomError
 
 # Beyond these bounds a number is a slip of the keyboard, whatever the unit set.
 _SMALLEST, _LARGEST = 1e-6, 1e7
@@ -19,7 +20,8 @@ Coordinate = Annotated[float, Field(ge=-_LARGEST, le=_LARGEST, allow_inf_nan=Fal
 Force = Annotated[float, Field(ge=-_MOST_FORCE, le=_MOST_FORCE, allow_inf_nan=False)]
 Stress = Annotated[float, Field(ge=1e-6, le=1e15, allow_inf_nan=False)]
 Side = Literal["inner", "outer"]
-Name = Annotated[str, Field(min_length=1, max_length=60)]
+# On one line, not blank, and nothing in it that a terminal would obey.
+Name = Annotated[str, Field(min_length=1, max_length=60, pattern=r"^[^\x00-\x1f\x7f-\x9f]*\S[^\x00-\x1f\x7f-\x9f]*$")]
 Vector = Annotated[list[Force], Field(min_length=2, max_length=2)]
 
 
@@ -161,8 +163,16 @@ class Member(Table):
     pieces: Annotated[list[Any], Field(min_length=1, max_length=200)]
 
 
+def _section_names(value: object) -> str | list[str]:
+    if isinstance(value, str):
+        return value
+    if isinstance(value, list) and len(value) == 2 and all(isinstance(name, str) for name in value):
+        return value
+    raise PydanticCustomError("section_names", "must be the name of a section, or a list of two to taper between")
+
+
 # A piece names one section, or two that it tapers between.
-SectionNames = Name | Annotated[list[Name], Field(min_length=2, max_length=2)]
+SectionNames = Annotated[str | list[str], PlainValidator(_section_names)]
 
 
 class StraightPiece(Table):

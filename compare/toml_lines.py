@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import tomllib
 from collections.abc import Iterator
 from dataclasses import dataclass
 from typing import TYPE_CHECKING
@@ -52,10 +53,10 @@ def _table(node: Node, counts: dict[Path, int]) -> Iterator[tuple[Path, Entry]]:
     head, *rest = [child for child in node.named_children if child.type != "comment"]
     names = _key(head)
     path: Path = ()
-    for name in names:
+    for depth, name in enumerate(names, start=1):
         path = (*path, name)
         # A table below an array of tables belongs to the array's last element.
-        if path in counts and not (path == names and node.type == "table_array_element"):
+        if path in counts and not (depth == len(names) and node.type == "table_array_element"):
             path = (*path, counts[path])
     line = node.start_point[0] + 1
     if node.type == "table_array_element":
@@ -92,4 +93,5 @@ def _key(node: Node) -> tuple[str, ...]:
     if node.type == "dotted_key":
         return tuple(name for child in node.named_children for name in _key(child))
     text = (node.text or b"").decode()
-    return (text.strip("\"'") if node.type == "quoted_key" else text,)
+    # A quoted key may hold escapes: the TOML reader knows them.
+    return tuple(tomllib.loads(f"{text} = 0")) if node.type == "quoted_key" else (text,)
